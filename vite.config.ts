@@ -1,0 +1,41 @@
+import { fileURLToPath } from 'node:url'
+import tailwindcss from '@tailwindcss/vite'
+import react from '@vitejs/plugin-react'
+import { defineConfig } from 'vitest/config'
+
+const here = (path: string) => fileURLToPath(new URL(path, import.meta.url))
+const alias = { '@shared': here('./shared'), '@server': here('./server'), '@client': here('./client') }
+
+// Journeys and database tests share two cores and one PostgreSQL, so only pure tests run file-parallel.
+const project = (name: string, extra: Record<string, unknown> = {}) => ({
+  extends: true as const,
+  test: { name, include: [`tests/${name}/**/*.test.{ts,tsx}`], ...extra }
+})
+
+export default defineConfig({
+  plugins: [react(), tailwindcss()],
+  resolve: { alias },
+  publicDir: 'client/assets',
+  optimizeDeps: { exclude: ['@ffmpeg/ffmpeg', '@ffmpeg/core'] },
+  build: {
+    outDir: 'storage/build',
+    emptyOutDir: true,
+    // A content security policy without data: addresses needs every asset as a file of its own.
+    assetsInlineLimit: 0,
+    target: 'es2022'
+  },
+  worker: { format: 'es' },
+  test: {
+    reporters: ['default'],
+    projects: [
+      project('unit'),
+      project('architecture'),
+      project('client', { environment: 'jsdom' }),
+      project('setup', { fileParallelism: false, testTimeout: 120_000, hookTimeout: 120_000 }),
+      project('api', { fileParallelism: false, testTimeout: 30_000, hookTimeout: 60_000 }),
+      project('realtime', { fileParallelism: false, testTimeout: 30_000, hookTimeout: 60_000 }),
+      project('media', { fileParallelism: false, testTimeout: 60_000, hookTimeout: 60_000 }),
+      project('e2e', { fileParallelism: false, testTimeout: 120_000, hookTimeout: 180_000 })
+    ]
+  }
+})
