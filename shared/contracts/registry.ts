@@ -1,0 +1,32 @@
+// Every route there is. What is not here is not served (a test walks the server's router to make sure).
+import { accountRoutes } from '@shared/contracts/account'
+import { barMapRoutes } from '@shared/contracts/bar-maps'
+import { commentRoutes } from '@shared/contracts/comments'
+import { groupEventRoutes } from '@shared/contracts/group-events'
+import { groupRoutes, invitationRoutes, linkRoutes } from '@shared/contracts/groups'
+import type { RouteDef } from '@shared/contracts/route'
+import { sessionRoutes } from '@shared/contracts/sessions'
+import { siteRoutes } from '@shared/contracts/site'
+import { recordingRoutes, takeRoutes } from '@shared/contracts/takes'
+import { chartRoutes, tuneRoutes } from '@shared/contracts/tunes'
+
+export const registry = {
+  site: siteRoutes,
+  account: accountRoutes,
+  groups: groupRoutes,
+  invitations: invitationRoutes,
+  links: linkRoutes,
+  groupEvents: groupEventRoutes,
+  tunes: tuneRoutes,
+  charts: chartRoutes,
+  takes: takeRoutes,
+  recordings: recordingRoutes,
+  barMaps: barMapRoutes,
+  comments: commentRoutes,
+  sessions: sessionRoutes
+} as const
+
+export const allRoutes = (): { name: string; def: RouteDef }[] =>
+  Object.entries(registry).flatMap(([noun, routes]) =>
+    Object.entries(routes as Record<string, RouteDef>).map(([verb, def]) => ({ name: `${noun}.${verb}`, def }))
+  )

@@ -1,0 +1,26 @@
+// Lengths and sizes that server and client both hold to.
+export const limits = {
+  name: 80,
+  title: 120,
+  email: 254,
+  passwordMin: 8,
+  passwordMax: 200,
+  commentText: 4000,
+  replyText: 4000,
+  /** Longest take, seconds (six hours). */
+  takeSec: 6 * 3600,
+  /** One upload, bytes. */
+  uploadBytes: 1024 ** 3,
+  /** One piece of a recording made in the browser, bytes. */
+  pieceBytes: 8 * 1024 ** 2,
+  /** Takes a member may have in one group, and the bytes of their originals together. */
+  takesPerMember: 2000,
+  bytesPerMember: 40 * 1024 ** 3,
+  takeNames: 100,
+  commentsPerTake: 5000,
+  jsonBytes: 512 * 1024,
+  operationsPerEdit: 200,
+  /** Invitation links live this long, days. */
+  invitationDays: 14,
+  pageSize: 100
+} as const
