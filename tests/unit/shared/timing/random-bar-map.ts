@@ -59,7 +59,8 @@ export const anyBarMapBody = (options: { minAnchors?: number; maxAnchors?: numbe
       const grid = createBarGrid(meters)
       const anchors: Anchor[] = []
       let count = grid.pulsesAt({ bar: startBar, beat: { n: 1, d: 1 } }).whole * 6
-      let sec = startSec
+      // JSON knows no minus zero.
+      let sec = startSec + 0
       for (const [i, { pulses, bpm }] of steps.entries()) {
         const whole = Math.floor(count / 6)
         const position = grid.placeAtPulses({ whole, part: reduced(count - whole * 6) })
