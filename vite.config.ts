@@ -12,9 +12,16 @@ const project = (name: string, extra: Record<string, unknown> = {}) => ({
   test: { name, include: [`tests/${name}/**/*.test.{ts,tsx}`], ...extra }
 })
 
+// Given by `npm run dev`: where the server answers while Vite serves the page.
+const api = process.env['PLUMBLINE_DEV_API']
+const proxy = api ? { '/api': api, '/healthz': api, '/socket.io': { target: api, ws: true } } : {}
+
 export default defineConfig({
+  server: { proxy },
   plugins: [react(), tailwindcss()],
   resolve: { alias },
+  // The server puts a fresh nonce in its place for every page it sends.
+  html: { cspNonce: '__PLUMBLINE_NONCE__' },
   publicDir: 'client/assets',
   optimizeDeps: { exclude: ['@ffmpeg/ffmpeg', '@ffmpeg/core'] },
   build: {

@@ -47,8 +47,8 @@ const programsFor = (data) => {
   throw new Trouble('PostgreSQL is missing. Please run: apt-get install postgresql')
 }
 
-/** Made aside and moved into place whole, so that a start interrupted here begins anew. @param {Cluster} cluster */
-const makeData = async (cluster) => {
+/** Made aside and moved into place whole, so that a start interrupted here begins anew. @param {Cluster} cluster @param {boolean} isDurable */
+const makeData = async (cluster, isDurable) => {
   const fresh = `${cluster.data}.new`
   const secret = path.join(cluster.folder, 'password.new')
   fs.rmSync(fresh, { recursive: true, force: true })
@@ -58,7 +58,7 @@ const makeData = async (cluster) => {
   handOver(cluster, fresh)
   handOver(cluster, secret)
   const safety = [`--pwfile=${secret}`, '--auth=scram-sha-256']
-  const text = ['--encoding=UTF8', '--locale=C.UTF-8']
+  const text = ['--encoding=UTF8', '--locale=C.UTF-8', ...(isDurable ? [] : ['--no-sync'])]
   const made = await call(cluster, 'initdb', ['-D', fresh, '-U', role, ...safety, ...text])
   fs.rmSync(secret)
   if (made.code !== 0) throw new Trouble(`PostgreSQL could not make ${fresh}:\n${made.output}`)
@@ -68,14 +68,14 @@ const makeData = async (cluster) => {
 /** @param {string} folder that exists @returns {string} as /proc shows it */
 export const dataFolder = (folder) => path.join(fs.realpathSync(folder), 'data')
 
-/** @param {string} folder @returns {Promise<Cluster>} with data made if there was none */
-export const openCluster = async (folder) => {
+/** @param {string} folder @param {boolean} isDurable @returns {Promise<Cluster>} with data made if there was none */
+export const openCluster = async (folder, isDurable) => {
   fs.mkdirSync(folder, { recursive: true })
   const data = dataFolder(folder)
   const real = path.dirname(data)
   const [log, password] = [path.join(real, 'log'), path.join(real, 'password')]
   const cluster = { folder: real, data, log, password, bin: programsFor(data), account: await chooseAccount(data) }
-  if (!fs.existsSync(data)) await makeData(cluster)
+  if (!fs.existsSync(data)) await makeData(cluster, isDurable)
   return cluster
 }
 

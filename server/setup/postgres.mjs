@@ -20,7 +20,7 @@ const usersLock = (/** @type {string} */ folder) => path.join(folder, 'users.loc
 export const openPostgres = async ({ folder, isDurable = true }) => {
   const bring = () =>
     alone(startLock(folder), async () => {
-      const cluster = await openCluster(folder)
+      const cluster = await openCluster(folder, isDurable)
       return { data: cluster.data, url: await ensureDatabase(cluster, await ensureRunning(cluster, isDurable)) }
     })
   // Taken before the start: whoever stops in the same moment sees that somebody needs the server.
