@@ -3,7 +3,15 @@ import type { DocumentKind, OperationFault } from '@shared/documents/document'
 import { err, ok, type Result } from '@shared/result'
 import { chartBodySchema, chartLimits, chartOperationSchema, type ChartOperation } from '@shared/music/chart-schema'
 import type { ChartBody, ChartSection } from '@shared/music/types'
-import { checkBars, checkChart, checkKey, checkMeter, checkOrder, checkTempo } from '@shared/music/validate-chart'
+import {
+  checkBars,
+  checkChart,
+  checkKey,
+  checkLength,
+  checkMeter,
+  checkOrder,
+  checkTempo
+} from '@shared/music/validate-chart'
 
 type Edited = Result<ChartBody, OperationFault>
 type Of<Kind extends ChartOperation['kind']> = Extract<ChartOperation, { kind: Kind }>
@@ -40,6 +48,8 @@ function withBars(
   const meter = checkMeter(body.meter)
   if (!meter.ok) return meter
   const changed = { ...section, bars }
+  const length = checkLength([...body.sections.filter(({ id }) => id !== section.id), changed])
+  if (!length.ok) return length
   const checked = checkBars(changed, meter.value, touched)
   return checked.ok ? ok(changed) : checked
 }

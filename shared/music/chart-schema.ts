@@ -10,6 +10,8 @@ export const chartLimits = {
   barsPerSection: 200,
   order: 200,
   barText: MAX_BAR_TEXT,
+  /** Characters in all bars together: reading an unknown chord takes a third of a millisecond. */
+  text: 6000,
   sectionName: MAX_SECTION_NAME,
   key: MAX_KEY_TEXT,
   meter: 8,

@@ -22,8 +22,10 @@ export interface BarFault {
 }
 
 /** Longest text that is read, and most bars it may hold. */
-export const MAX_CHART_TEXT = 20_000
+export const MAX_CHART_TEXT = 10_000
 export const MAX_CHART_BARS = 1_000
+/** After so many faulty bars the rest is not looked at: the text is no chart. */
+const MOST_FAULTS = 20
 /** Longest name of a section. */
 export const MAX_SECTION_NAME = 40
 
@@ -66,6 +68,7 @@ export function parseChartText(text: string, meter: Meter): Result<ChartText, Ba
     if (sections.length === 0) sections.push({ name: freeLetter(sections), bars: [] })
     for (const cell of cells) {
       number += 1
+      if (faults.length >= MOST_FAULTS) return err(faults)
       const reason = cell.includes(':')
         ? 'repeat signs are not read here: write % for a bar, and the order of the sections for a section'
         : barReason(cell, meter)

@@ -29,6 +29,9 @@ export interface SoundingBarChord extends BarChord {
 /** Longest text of one bar. */
 export const MAX_BAR_TEXT = 120
 
+/** Most words in one bar: sixteen beats with chords written in two words. */
+const MAX_BAR_WORDS = 32
+
 const HOLDS = new Set(['.', '/', '-', '–', '−'])
 const REPEATS = new Set(['%', '𝄎'])
 
@@ -68,6 +71,7 @@ function evenBeats(count: number, meter: Meter): Rational[] | undefined {
 export function readBar(text: string, meter: Meter): Result<BarContent, ChordFault> {
   if (text.length > MAX_BAR_TEXT) return err({ message: `A bar holds at most ${MAX_BAR_TEXT} characters` })
   if (text.includes('|')) return err({ message: 'A bar line stands inside the bar' })
+  if (text.split(/\s+/u).length > MAX_BAR_WORDS) return err({ message: 'More is written than a bar can hold' })
   const words = barWords(text)
   if (words.every((word) => HOLDS.has(word))) return ok({ kind: 'continue' })
   if (words.some((word) => REPEATS.has(word)))

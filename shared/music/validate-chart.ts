@@ -2,6 +2,7 @@
 import type { OperationFault } from '@shared/documents/document'
 import { err, ok, type Result } from '@shared/result'
 import { readBar } from '@shared/music/chart'
+import { chartLimits } from '@shared/music/chart-schema'
 import { readKey } from '@shared/music/key'
 import type { ChartBody, ChartSection } from '@shared/music/types'
 import { readMeter } from '@shared/timing/meter'
@@ -46,11 +47,18 @@ export function checkOrder(body: ChartBody): Result<void, OperationFault> {
   return stray < 0 ? ok(undefined) : fault('The order names a section that the chart does not have', ['order', stray])
 }
 
+export function checkLength(sections: ChartSection[]): Result<void, OperationFault> {
+  const length = sections.reduce((sum, { bars }) => sum + bars.reduce((some, bar) => some + bar.length, 0), 0)
+  if (length <= chartLimits.text) return ok(undefined)
+  return fault(`A chart holds at most ${chartLimits.text} characters in its bars`, ['sections'])
+}
+
 /** Key, meter, tempo, order and every bar of a chart. Call it on a chart that does not come through an operation. */
 export function checkChart(body: ChartBody): Result<ChartBody, OperationFault> {
   const meter = checkMeter(body.meter)
   if (!meter.ok) return meter
-  for (const checked of [checkKey(body.key), checkTempo(body.tempo), checkOrder(body)]) if (!checked.ok) return checked
+  for (const checked of [checkKey(body.key), checkTempo(body.tempo), checkOrder(body), checkLength(body.sections)])
+    if (!checked.ok) return checked
   for (const section of body.sections) {
     const bars = checkBars(section, meter.value)
     if (!bars.ok) return bars
