@@ -37,7 +37,6 @@ void keepHouse({
     const pagesEnv = () => ({ ...env(), PLUMBLINE_DEV_API: `http://127.0.0.1:${apiPort}` })
     const server = supervise({ name: 'server', args: typescript('server/main.ts'), env: apiEnv })
     const worker = supervise({ name: 'worker', args: typescript('server/worker.ts'), env: apiEnv })
-    const guard = path.join(root, 'server', 'setup', 'end-with-parent.mjs')
     const vite = [
       packageFile('vite/bin/vite.js'),
       '--host',
@@ -51,7 +50,7 @@ void keepHouse({
     // Vite ends by itself only when it cannot start.
     supervise({
       name: 'page server',
-      args: ['--import', guard, ...vite],
+      args: vite,
       env: pagesEnv,
       onListening: () => {},
       onGiveUp: giveUp

@@ -1,4 +1,5 @@
 // Keeps a program of ours running.
+import path from 'node:path'
 import { setTimeout as sleep } from 'node:timers/promises'
 import { root } from './paths.mjs'
 import { endGroup, exitOf, isStopping, signalGroup, spawnGroup } from './processes.mjs'
@@ -7,6 +8,7 @@ import { note } from './say.mjs'
 /** Exit code of a program whose configuration is at fault (EX_CONFIG of sysexits.h): starting it again cannot help. */
 export const configFault = 78
 
+const guard = path.join(root, 'server', 'setup', 'end-with-parent.mjs')
 const firstPauseMs = 250
 const longestPauseMs = 10_000
 const healthyMs = 60_000
@@ -32,7 +34,7 @@ export const supervise = ({ name, args, env, onListening, onGiveUp }) => {
   /** One life of the program. @returns {Promise<number>} its exit code */
   const live = async () => {
     isAsked = false
-    const current = spawnGroup(process.execPath, args, {
+    const current = spawnGroup(process.execPath, ['--import', guard, ...args], {
       cwd: root,
       env: env(),
       stdio: ['ignore', 'inherit', 'inherit', 'ipc']

@@ -1,16 +1,6 @@
 // Real processes for the tests of setting up: started, listened to, counted in /proc.
 import { spawn, type ChildProcess, type SpawnOptions } from 'node:child_process'
-import {
-  chmodSync,
-  cpSync,
-  existsSync,
-  mkdtempSync,
-  readFileSync,
-  readdirSync,
-  readlinkSync,
-  realpathSync,
-  rmSync
-} from 'node:fs'
+import { chmodSync, cpSync, mkdtempSync, readFileSync, readdirSync, readlinkSync, realpathSync, rmSync } from 'node:fs'
 import { tmpdir } from 'node:os'
 import path from 'node:path'
 import { setTimeout as sleep } from 'node:timers/promises'
@@ -113,29 +103,31 @@ export const processesOf = (folder: string): number[] =>
 export const postmastersOf = (folder: string): number[] =>
   processesOf(folder).filter((pid) => commandOf(pid).includes(`postgres -D ${folder}/data`))
 
-/** Numbers of processes that have `text` in their environment. */
-export const processesWith = (text: string): number[] =>
-  allPids().filter((pid) => {
-    try {
-      return readFileSync(`/proc/${pid}/environ`, 'utf8').includes(text)
-    } catch {
-      return false
-    }
-  })
-
+/** Numbers of the node processes that run `script` of the project in `folder`. */
+export const processNamed = (folder: string, script: string): number[] =>
+  allPids().filter((pid) => commandOf(pid).includes(path.join(folder, script)))
 /** Waits for something to become true; the test's own time limit is the only deadline. */
 export const until = async (isTrue: () => boolean | Promise<boolean>): Promise<void> => {
   while (!(await isTrue())) await sleep(50)
+}
+
+const killIfThere = (pid: number): void => {
+  try {
+    process.kill(pid, 'SIGKILL')
+  } catch {
+    // It ended by itself in this moment.
+  }
 }
 
 /** Kills what a failed test left, and removes the folders. */
 export const clearFolders = async (): Promise<void> => {
   for (const child of users.splice(0)) child.kill('SIGKILL')
   for (const folder of folders.splice(0)) {
-    for (const pid of processesOf(folder)) {
-      if (existsSync(`/proc/${pid}`)) process.kill(pid, 'SIGKILL')
-    }
-    await until(() => processesOf(folder).length === 0)
+    await until(() => {
+      const left = processesOf(folder)
+      for (const pid of left) killIfThere(pid)
+      return left.length === 0
+    })
     rmSync(folder, { recursive: true, force: true, maxRetries: 5 })
   }
 }
