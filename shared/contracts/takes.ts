@@ -61,11 +61,15 @@ export const PiecesManifest = z.object({
   sampleRate: z.number().int(),
   channels: z.number().int(),
   totalFrames: z.number().int(),
+  mime: z.string(),
   pieces: z.array(
     z.object({
       firstSample: z.number().int(),
       frames: z.number().int(),
+      /** Frames to drop from the front of the decoded piece. */
       preroll: z.number().int(),
+      /** Frames a decoder gives for the whole piece. */
+      decodedFrames: z.number().int(),
       bytes: z.number().int(),
       url: z.string()
     })

@@ -79,7 +79,8 @@ export const serverEvents = {
   /** Rights were lost: the socket has been taken out of the group's room. */
   'group:closed': z.object({ groupId: Uuid }),
   'take:progress': z.object({ takeId: Uuid, stage: z.string(), progress: z.number() }),
-  'session:state': Session,
+  /** The whole session again; what the asker may do in it came with their own join. */
+  'session:state': Session.omit({ abilities: true }),
   'transport:state': TransportState.extend(inSession),
   'pointer:shown': z.object({ ...inSession, personId: Uuid, span: Span.nullable() }),
   'signIn:ended': None
