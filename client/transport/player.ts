@@ -31,8 +31,22 @@ export interface PlayerEvents {
   fault: { message: string }
 }
 
+/** Speeds every engine keeps to. */
+export const rateLimits = { min: 0.2, max: 1.5 }
+/** Moderate on purpose: a first sound must not be a loud one. */
+export const defaultVolume = 0.7
+
+/** What an engine can do beyond playing, seeking, looping and slowing. */
+export interface PlayerCapabilities {
+  /** Can shift pitch; without it `setPitch` is ignored and `semitones` stays 0. */
+  pitch: boolean
+  /** Can act at a moment to come (`at`). */
+  schedule: boolean
+}
+
 /** `at` is a time of `clock()`; an engine that cannot schedule acts at once. */
 export interface Player {
+  readonly capabilities: PlayerCapabilities
   readonly state: PlayerState
   readonly durationSec: Sec
   /** What is heard now. */
@@ -46,6 +60,7 @@ export interface Player {
   /** Seconds on the engine's own clock. */
   clock(): Sec
   positionAt(clock: Sec): Sec
+  /** Resolves when the source can be sought in, or has failed (`state` and `fault` tell). Stops what was playing. */
   load(source: PlayerSource): Promise<void>
   /** Resolves false when the browser refused to start sound without a tap. */
   play(at?: Sec): Promise<boolean>
