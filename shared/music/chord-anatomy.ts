@@ -56,7 +56,9 @@ function figureOf(has: Has, seventh: ChordAnatomy['seventh'], secondHangs: boole
 
 /** Natural degrees that the figure already says. */
 function heldBy(figure: number, minor: boolean): number[] {
-  if (figure === 69 || figure === 9) return [9]
+  if (figure === 6) return [6]
+  if (figure === 69) return [6, 9]
+  if (figure === 9) return [9]
   if (figure === 11) return [9, 11]
   return figure === 13 ? (minor ? [9, 11, 13] : [9, 13]) : []
 }
@@ -84,9 +86,10 @@ export function chordAnatomy(chord: SoundingChord): ChordAnatomy {
   const figure = power ? 5 : figureOf(has, seventh, secondHangs)
   const sus: ('2' | '4')[] = [...(secondHangs ? (['2'] as const) : []), ...(has('4') && !third ? (['4'] as const) : [])]
   const held = heldBy(figure, has('b3'))
-  const natural = [4, 9, 11, 13].filter((degree) => has(String(degree)) && !held.includes(degree))
-  const omitsThird = !third && sus.length === 0 && figure !== 11 && !power && !bare && stem !== 'diminished'
-  const omitsFifth = !has('5', 'b5', '#5', 'b13') && !bare
+  const natural = [4, 6, 9, 11, 13].filter((degree) => has(String(degree)) && !held.includes(degree))
+  const omitsThird = !third && sus.length === 0 && figure !== 11 && !power && !bare
+  // A flat thirteen takes the fifth's place, but not that of a diminished one.
+  const omitsFifth = !has('5', 'b5', '#5') && !bare && (stem === 'diminished' || !has('b13'))
   return {
     stem,
     seventh,

@@ -77,6 +77,14 @@ const SEMITONES: Record<ChordDegree, number> = {
   '7': 11
 }
 
+const WITH_ALT = new Set(['alt', 'seventh', 'b5', '#5', 'b9', '#9', '#11', 'b13'])
+
+// Degrees that no hand means together and the package lets pass.
+const CLASHES: [ChordDegree, ChordDegree][] = [
+  ['3', 'bb7'],
+  ['6', 'b13']
+]
+
 interface ReadDescriptor {
   degrees: ChordDegree[]
   modifiers: string[]
@@ -103,7 +111,11 @@ function parseDescriptor(normal: string): ReadDescriptor | undefined {
     const { modifiers } = read.input
     const alone = modifiers.includes('power') ? '5' : modifiers.includes('bass') ? 'bass' : undefined
     if (alone !== undefined && modifiers.length > 1) return undefined
-    return { degrees: read.normalized.intervals, modifiers: [...modifiers] }
+    // "Altered" says all about a dominant's tensions; over anything else it says nothing.
+    if (modifiers.includes('alt') && modifiers.some((modifier) => !WITH_ALT.has(modifier))) return undefined
+    const { intervals } = read.normalized
+    if (CLASHES.some((pair) => pair.every((degree) => intervals.includes(degree)))) return undefined
+    return { degrees: intervals, modifiers: [...modifiers] }
   }
   return undefined
 }
