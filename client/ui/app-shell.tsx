@@ -27,12 +27,12 @@ export function AppShell({ crumbs = [], right, fill = false, children }: AppShel
     <div className={cx('flex min-h-dvh flex-col', fill && 'lg:h-dvh lg:min-h-0')}>
       <SkipLink to="main" />
       <header className="flex min-h-13 flex-none flex-wrap items-center gap-x-4 gap-y-1 px-3 py-2 sm:px-5">
-        <Link to="/" className="flex min-h-9 items-center gap-4 pl-0.5 font-semibold text-ink no-underline">
+        <Link to="/" className="flex min-h-9 min-w-6 items-center gap-4 pl-0.5 font-semibold text-ink no-underline">
           <PlumbMark />
           <span className={cx(crumbs.length > 0 && 'sr-only sm:not-sr-only')}>Plumbline</span>
         </Link>
         {crumbs.length > 0 ? (
-          <nav aria-label="Where you are" className="min-w-0 flex-1">
+          <nav aria-label="Where you are" className="min-w-0 flex-[1_1_9rem]">
             <ol className="flex min-w-0 items-center gap-x-2">
               {above?.to ? (
                 <li className="sm:hidden">

@@ -1,18 +1,5 @@
 // How a chord is set: the one list of pieces that both the page and the canvas draw.
-
-export type ChordAccidental = '' | '♭' | '♯' | '𝄫' | '𝄪'
-
-export type ChordGlyph = 'triangle' | 'halfDiminished' | 'diminished' | 'minus'
-
-export interface ChordParts {
-  root: string
-  accidental: ChordAccidental
-  /** Stands on the line behind the root: m, maj, a triangle … */
-  quality: readonly ({ text: string } | { glyph: ChordGlyph })[]
-  /** Raised and smaller: 7, ♭9, sus4 … one string each. */
-  raised: readonly string[]
-  bass?: { root: string; accidental: ChordAccidental }
-}
+import type { TypesetChord } from '@shared/music/chord-typeset'
 
 export interface ChordRun {
   text: string
@@ -25,24 +12,19 @@ export interface ChordRun {
   gap: number
 }
 
-// Triangle: SMuFL "csymMajorSeventh", U+E873. The shipped face carries the others under their plain Unicode signs.
-const glyphText: Record<ChordGlyph, string> = {
-  triangle: '\uE873',
-  halfDiminished: 'ø',
-  diminished: '°',
-  minus: '−'
-}
+// SMuFL csymMajorSeventh; the shipped face carries the other signs under their plain Unicode places.
+const triangle = '\uE873'
 
 const signs = /[♭♯♮𝄫𝄪°ø△\uE873]/u
 
-/** Cuts text into stretches of letters and stretches of music signs, which come from another face. */
-function stretches(text: string): { text: string; isSign: boolean }[] {
-  const cut: { text: string; isSign: boolean }[] = []
+/** Cuts text into stretches that `kind` tells apart, in order. */
+function stretches<K>(text: string, kind: (char: string) => K): { text: string; kind: K }[] {
+  const cut: { text: string; kind: K }[] = []
   for (const char of text) {
-    const isSign = signs.test(char)
+    const here = kind(char)
     const last = cut.at(-1)
-    if (last && last.isSign === isSign) last.text += char
-    else cut.push({ text: char, isSign })
+    if (last && last.kind === here) last.text += char
+    else cut.push({ text: char, kind: here })
   }
   return cut
 }
@@ -51,76 +33,31 @@ type Setting = Pick<ChordRun, 'scale' | 'rise' | 'weight' | 'gap'>
 
 const asRoot: Setting = { scale: 1, rise: 0, weight: 600, gap: 0 }
 const asQuality: Setting = { scale: 0.78, rise: 0, weight: 600, gap: 0.03 }
-const asRaised: Setting = { scale: 0.66, rise: 0.36, weight: 600, gap: 0.03 }
+const asRaised: Setting = { scale: 0.66, rise: 0.36, weight: 600, gap: 0.04 }
 const asNextRaised: Setting = { ...asRaised, gap: 0.1 }
 const asSlash: Setting = { scale: 0.9, rise: -0.06, weight: 400, gap: 0.06 }
 const asBass: Setting = { scale: 0.82, rise: -0.06, weight: 600, gap: 0.02 }
 
 const set = (text: string, setting: Setting): ChordRun[] =>
-  stretches(text).map(({ text: piece, isSign }, index) => ({
+  stretches(text, (char) => signs.test(char)).map((piece, index) => ({
     ...setting,
-    text: piece,
-    face: isSign ? 'signs' : 'text',
+    text: piece.text,
+    face: piece.kind ? 'signs' : 'text',
     gap: index === 0 ? setting.gap : 0.02
   }))
 
-export function chordRuns(parts: ChordParts): ChordRun[] {
-  const bass = parts.bass ? [...set('/', asSlash), ...set(parts.bass.root + parts.bass.accidental, asBass)] : []
+// Of the quality the letters and signs stand on the line and the figures are raised: m⁷, maj⁷, ⁶⸍⁹.
+const setQuality = (text: string): ChordRun[] =>
+  stretches(text, (char) => /[\d/]/u.test(char)).flatMap((piece) => set(piece.text, piece.kind ? asRaised : asQuality))
+
+export function chordRuns(chord: TypesetChord): ChordRun[] {
+  const quality = chord.quality.map((piece) => (piece.kind === 'triangle' ? triangle : piece.text)).join('')
+  const qualityRuns = setQuality(quality)
+  const hasFigure = qualityRuns.some(({ rise }) => rise > 0)
   return [
-    ...set(parts.root + parts.accidental, asRoot),
-    ...parts.quality.flatMap((piece) => set('glyph' in piece ? glyphText[piece.glyph] : piece.text, asQuality)),
-    ...parts.raised.flatMap((text, index) => set(text, index === 0 ? asRaised : asNextRaised)),
-    ...bass
+    ...set(chord.root + chord.accidental, asRoot),
+    ...qualityRuns,
+    ...chord.raised.flatMap((text, index) => set(text, index === 0 && !hasFigure ? asRaised : asNextRaised)),
+    ...(chord.bass ? [...set('/', asSlash), ...set(chord.bass.letter + chord.bass.accidental, asBass)] : [])
   ]
-}
-
-const spokenSigns: [RegExp, string][] = [
-  [/𝄫/gu, ' double flat '],
-  [/𝄪/gu, ' double sharp '],
-  [/♭/gu, ' flat '],
-  [/♯/gu, ' sharp '],
-  [/[△\uE873]/gu, ' major seven '],
-  [/°/gu, ' diminished '],
-  [/ø/gu, ' half diminished ']
-]
-
-const spokenWords: Record<string, string> = {
-  m: 'minor',
-  mi: 'minor',
-  min: 'minor',
-  '−': 'minor',
-  '-': 'minor',
-  maj: 'major',
-  ma: 'major',
-  M: 'major',
-  dim: 'diminished',
-  aug: 'augmented',
-  '+': 'augmented',
-  sus: 'suspended',
-  alt: 'altered'
-}
-
-const spokenGlyphs: Record<ChordGlyph, string> = {
-  triangle: 'major seven',
-  halfDiminished: 'half diminished',
-  diminished: 'diminished',
-  minus: 'minor'
-}
-
-function spokenText(text: string): string {
-  const worded = spokenSigns.reduce((rest, [sign, word]) => rest.replace(sign, word), text)
-  return worded.replace(/[\p{L}+−-]+/gu, (word) => ` ${spokenWords[word] ?? word} `)
-}
-
-/** The chord as one says it: "B flat 7 sharp 11 over D". */
-export function spokenChord(parts: ChordParts): string {
-  const words = [
-    // Letters stay as they are: A is a note here, not a word.
-    parts.root,
-    spokenText(parts.accidental),
-    ...parts.quality.map((piece) => ('glyph' in piece ? spokenGlyphs[piece.glyph] : spokenText(piece.text))),
-    ...parts.raised.map((text) => spokenText(text)),
-    parts.bass ? `over ${parts.bass.root} ${spokenText(parts.bass.accidental)}` : ''
-  ]
-  return words.join(' ').replace(/[()]/gu, ' ').replace(/\s+/gu, ' ').trim()
 }

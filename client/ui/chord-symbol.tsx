@@ -1,9 +1,14 @@
-import { chordRuns, spokenChord } from './chord-runs'
-import type { ChordParts } from './chord-runs'
+import type { Chord } from '@shared/music/chord'
+import { typesetChord } from '@shared/music/chord-typeset'
+import type { ChordStyle } from '@shared/music/chord-typeset'
+import { chordWords } from '@shared/music/chord-words'
+import { chordRuns } from './chord-runs'
 import { cx } from './classes'
 
 export interface ChordSymbolProps {
-  parts: ChordParts
+  chord: Chord
+  /** The reader's handwriting. */
+  style?: ChordStyle
   /** The chord of a bar that repeats the one before: shown, but faint. */
   faint?: boolean
   /** An implied chord. */
@@ -13,20 +18,20 @@ export interface ChordSymbolProps {
 }
 
 /** A chord, set: root, quality, raised extensions, bass. Spoken in words. */
-export function ChordSymbol({ parts, faint = false, claim = false, size }: ChordSymbolProps) {
+export function ChordSymbol({ chord, style, faint = false, claim = false, size }: ChordSymbolProps) {
   return (
     <span
       // Set type, not a picture file: no tag for that.
       // oxlint-disable-next-line jsx-a11y/prefer-tag-over-role
       role="img"
-      aria-label={spokenChord(parts)}
+      aria-label={chordWords(chord)}
       className={cx(
         'inline-block leading-none whitespace-nowrap',
         faint ? 'text-faint' : claim ? 'text-claim' : 'text-ink'
       )}
       style={size === undefined ? undefined : { fontSize: `${size}px` }}
     >
-      {chordRuns(parts).map((run, index) => (
+      {chordRuns(typesetChord(chord, style)).map((run, index) => (
         <span
           // A run has no name but its place in the chord.
           // oxlint-disable-next-line react/no-array-index-key

@@ -1,6 +1,7 @@
 // The canvas twin of chord-symbol.tsx: the same pieces at the same places.
+import type { TypesetChord } from '@shared/music/chord-typeset'
 import { chordRuns } from './chord-runs'
-import type { ChordParts, ChordRun } from './chord-runs'
+import type { ChordRun } from './chord-runs'
 import { canvasFonts } from './tokens'
 
 /** What is used of a 2D context, so that an OffscreenCanvas or a test's recorder will do. */
@@ -19,13 +20,13 @@ const fontOf = (run: ChordRun, size: number, faint: boolean) =>
 
 function walk(
   ctx: ChordContext,
-  parts: ChordParts,
+  chord: TypesetChord,
   size: number,
   faint: boolean,
   visit: (run: ChordRun, offset: number) => void
 ): number {
   let offset = 0
-  for (const run of chordRuns(parts)) {
+  for (const run of chordRuns(chord)) {
     ctx.font = fontOf(run, size, faint)
     offset += run.gap * size
     visit(run, offset)
@@ -37,15 +38,15 @@ function walk(
 /** Width in the context's units; `size` is the root's font size. */
 export const measureChord = (
   ctx: ChordContext,
-  parts: ChordParts,
+  chord: TypesetChord,
   size: number,
   options: DrawChordOptions = {}
-): number => walk(ctx, parts, size, options.faint ?? false, () => undefined)
+): number => walk(ctx, chord, size, options.faint ?? false, () => undefined)
 
 /** Draws with the left edge at `x` and the root standing on `y`; returns the width. Wait for `fontsReady` first. */
 export function drawChord(
   ctx: ChordContext,
-  parts: ChordParts,
+  chord: TypesetChord,
   x: number,
   y: number,
   size: number,
@@ -55,7 +56,7 @@ export function drawChord(
   ctx.fillStyle = colour
   ctx.textAlign = 'left'
   ctx.textBaseline = 'alphabetic'
-  return walk(ctx, parts, size, options.faint ?? false, (run, offset) =>
+  return walk(ctx, chord, size, options.faint ?? false, (run, offset) =>
     ctx.fillText(run.text, x + offset, y - run.rise * size)
   )
 }

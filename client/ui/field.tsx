@@ -38,7 +38,7 @@ export function Field({
   const message = useFault(name, fault)
   const describedBy = [hint ? `${id}-hint` : '', message ? `${id}-fault` : ''].filter(Boolean).join(' ')
   return (
-    <div className="grid min-w-0 gap-1">
+    <div className="grid min-w-0 content-start gap-1">
       <label htmlFor={id} className={labelHidden ? 'sr-only' : 'text-sm text-pencil'}>
         {label}
         {optional ? ' (optional)' : null}

@@ -19,7 +19,7 @@ function hash(id: string): number {
   return value >>> 0
 }
 
-const spacings = [3, 4, 5.5]
+const spacings = [2.75, 3.75, 5]
 
 export function hatchOf(id: string): Hatch {
   const value = hash(id)

@@ -31,21 +31,21 @@ export function Initials({ id, name, size = 24, leads = false, decorative = fals
       <path
         d={hatchPath(hatch)}
         stroke="currentColor"
-        strokeWidth="0.75"
+        strokeWidth="0.9"
         strokeDasharray={hatch.broken ? '2 2' : undefined}
-        opacity="0.45"
+        opacity="0.7"
         fill="none"
       />
       <rect x="0.5" y="0.5" width="23" height="23" fill="none" stroke="currentColor" />
       <text
         x="12"
-        y="15.75"
+        y="15.6"
         textAnchor="middle"
-        fontSize="10.5"
+        fontSize="10"
         fontWeight="600"
         fill="var(--ink)"
         stroke="var(--sheet)"
-        strokeWidth="3.5"
+        strokeWidth="2.25"
         strokeLinejoin="round"
         paintOrder="stroke"
       >

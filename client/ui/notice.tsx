@@ -24,7 +24,7 @@ export function Notice({ kind = 'status', title, children, next }: NoticeProps) 
           <Icon name="warning" />
         </span>
       ) : null}
-      <div className="grid min-w-0 gap-1">
+      <div className="grid min-w-0 content-start gap-1">
         {title ? <p className={cx('font-semibold', isFault && 'text-fault')}>{title}</p> : null}
         <div className="break-words">{children}</div>
         {next ? <div className="mt-2 flex flex-wrap gap-2">{next}</div> : null}

@@ -30,7 +30,7 @@ export interface SentenceNumberProps {
 
 // The part is as wide as what stands in it, and never a smaller target than 24 px.
 const partClass =
-  'dotted-edit mx-0.5 inline-block h-7 min-w-6 bg-transparent px-0.5 text-center font-semibold text-ink field-sizing-content'
+  'dotted-edit inline-block h-6 min-w-6 bg-transparent p-0 text-center font-semibold text-ink field-sizing-content'
 
 /** Type a number (Enter or leaving keeps it, Esc takes it back), or step it with up and down. */
 export function SentenceNumber({ label, value, unit = '', min, max, step = 1, onChange }: SentenceNumberProps) {
@@ -98,7 +98,7 @@ export function SentenceChoice<V extends string>({ label, value, choices, onChan
       aria-label={label}
       value={value}
       onChange={(event) => onChange(event.target.value as V)}
-      className="dotted-edit mx-0.5 h-7 appearance-none bg-transparent px-0.5 text-ink field-sizing-content"
+      className="dotted-edit h-6 min-w-6 appearance-none bg-transparent p-0 text-ink field-sizing-content"
     >
       {choices.map((choice) => (
         <option key={choice.value} value={choice.value} className="bg-sheet">

@@ -16,6 +16,7 @@ from fontTools.pens.cu2quPen import Cu2QuPen
 from fontTools.pens.transformPen import TransformPen
 from fontTools.pens.ttGlyphPen import TTGlyphPen
 from fontTools.ttLib import TTFont
+from fontTools.ttLib.tables._g_l_y_f import flagOverlapSimple
 
 HERE = Path(__file__).parent
 PACKAGES = HERE.parents[2] / "node_modules"
@@ -24,12 +25,20 @@ LEXEND = PACKAGES / "@fontsource/lexend/files"
 ASCENT, DESCENT = 1000, -250
 
 
-def outline(font, codepoint, matrix):
+def outline(font, codepoint, matrix, embolden=0):
+    """`embolden`: the outline is laid over itself at the corners of a square of this side, which thickens every stroke."""
     glyphs = font.getGlyphSet()
     pen = TTGlyphPen(None)
-    # Cubic sources become quadratic within one unit; direction flips as TrueType wants.
-    glyphs[font.getBestCmap()[codepoint]].draw(TransformPen(Cu2QuPen(pen, 0.8, reverse_direction="CFF " in font), matrix))
-    return pen.glyph()
+    half = embolden / 2
+    corners = [(-half, -half), (half, -half), (-half, half), (half, half)] if embolden else [(0, 0)]
+    for dx, dy in corners:
+        moved = (*matrix[:4], matrix[4] + dx, matrix[5] + dy)
+        # Cubic sources become quadratic within one unit; direction flips as TrueType wants.
+        glyphs[font.getBestCmap()[codepoint]].draw(TransformPen(Cu2QuPen(pen, 0.8, reverse_direction="CFF " in font), moved))
+    glyph = pen.glyph()
+    if embolden:
+        glyph.flags[0] |= flagOverlapSimple
+    return glyph
 
 
 def bounds(font, codepoint):
@@ -39,12 +48,12 @@ def bounds(font, codepoint):
     return pen.bounds
 
 
-def fitted(font, codepoint, bottom, height, side):
+def fitted(font, codepoint, bottom, height, side, embolden):
     """Glyph scaled so that it stands on `bottom`, is `height` tall and has `side` units of air left and right."""
     x0, y0, x1, y1 = bounds(font, codepoint)
     scale = height / (y1 - y0)
     matrix = (scale, 0, 0, scale, side - x0 * scale, bottom - y0 * scale)
-    return outline(font, codepoint, matrix), round((x1 - x0) * scale + 2 * side)
+    return outline(font, codepoint, matrix, embolden), round((x1 - x0) * scale + 2 * side)
 
 
 def save(family, weight, glyphs, licence, out):
@@ -74,16 +83,16 @@ def signs(weight, academico):
     text, music = TTFont(VEX / "academico" / academico), TTFont(VEX / "bravura/bravura.woff2")
     rows = []
     for name, cps, font, source, bottom, height, side in [
-        ("flat", [0x266D], text, 0x266D, -10, 730, 30),
+        ("flat", [0x266D], text, 0x266D, -15, 800, 30),
         ("sharp", [0x266F], text, 0x266F, -60, 820, 35),
         ("natural", [0x266E], text, 0x266E, -60, 820, 35),
-        ("doubleFlat", [0x1D12B], music, 0xE264, -10, 730, 30),
+        ("doubleFlat", [0x1D12B], music, 0xE264, -15, 800, 30),
         ("doubleSharp", [0x1D12A], music, 0xE263, 140, 420, 35),
-        ("triangle", [0xE873, 0x25B3], music, 0xE873, 0, 620, 45),
-        ("degree", [0x00B0, 0xE870], text, 0x00B0, 360, 340, 45),
-        ("slashedO", [0x00F8, 0xE871], text, 0x00F8, -40, 600, 40),
+        ("triangle", [0xE873, 0x25B3], music, 0xE873, 8, 680, 45),
+        ("degree", [0x00B0, 0xE870], text, 0x00B0, 330, 420, 45),
+        ("slashedO", [0x00F8, 0xE871], text, 0x00F8, -50, 760, 40),
     ]:
-        shape, advance = fitted(font, source, bottom, height, side)
+        shape, advance = fitted(font, source, bottom, height, side, 22 if weight == 600 else 0)
         rows.append((name, cps, shape, advance))
     save("Plumbline Signs", weight, rows, "SIL Open Font License 1.1; made from Academico and Bravura, (c) Steinberg", f"plumbline-signs-{weight}.woff2")
 
