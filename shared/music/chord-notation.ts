@@ -13,6 +13,7 @@ export interface CutSymbol {
 const SIGNS: [RegExp, string][] = [
   [/[♭]/gu, 'b'],
   [/[♯]/gu, '#'],
+  [/♮/gu, ''],
   [/𝄫/gu, 'bb'],
   [/𝄪/gu, '##'],
   [/[−–—‐‑‒﹣]/gu, '-'],
@@ -96,6 +97,10 @@ export function normalDescriptor(typed: string): string {
   text = signedDegrees(text)
   return (
     text
+      // Over a triad a slash and a figure add that degree alone (C/9); over a seventh they only part the figures (7/9).
+      .replace(/^(m|mi|min|minor|-|)\/(?=(?:9|2|11|4)(?!\d))/gu, '$1add')
+      // A ninth over a diminished chord keeps the diminished seventh; the package would make the seventh minor.
+      .replace(/^(dim|diminished|°|o|0)(?=(?:9|11)(?!\d))/gu, '$17add')
       // The bare power figure silences all that follows in the package: what is meant is a chord without third.
       .replace(/^5(?=[^/])/u, 'no3')
       .replace(/(?<!\d)6\((?:add)?9\)/gu, '69')

@@ -14,7 +14,7 @@ const answers = (input: string): unknown[] => {
     .map((line): unknown => JSON.parse(line))
 }
 
-describe('the chords command', () => {
+describe('the chords command', { timeout: 60_000 }, () => {
   it('answers every line in order, with root and bass counted from C and the rest from the root', () => {
     expect(answers('Ebm7b5/A\r\nN.C.\n\nhello\nG7')).toEqual([
       { root: 3, bass: 9, pcs: [0, 3, 6, 10], kind: 'half-diminished' },

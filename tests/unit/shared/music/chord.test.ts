@@ -81,8 +81,11 @@ describe('readChord', () => {
     ['A-9', [0, 2, 3, 7, 10]],
     ['A7+9', [0, 3, 4, 7, 10]],
     ['A+9', [0, 2, 4, 8, 10]],
-    ['Am-5', [0, 3, 6]]
-  ])('tells an altered degree from a quality in %s', (text, pcs) => {
+    ['Am-5', [0, 3, 6]],
+    ['A/9', [0, 2, 4, 7]],
+    ['A7/9', [0, 2, 4, 7, 10]],
+    ['A°9', [0, 2, 3, 6, 9]]
+  ])('tells altered degrees, added ones and qualities apart in %s', (text, pcs) => {
     expect(sounding(text).pcs).toEqual(pcs)
   })
 
