@@ -19,16 +19,15 @@ export type MediaProcess = { stdin: Writable | null; stdout: Readable; exit: Pro
 // A text file called .mp3 can be a list that makes ffmpeg read other local files: only these demuxers may open anything.
 const formats = 'wav,w64,mp3,flac,ogg,mov,mp4,m4a,matroska,webm,aac,aiff'
 const pcm = ['s16', 's24', 's32', 'f32', 'f64'].flatMap((kind) => [`pcm_${kind}le`, `pcm_${kind}be`])
-const codecs = [
-  ...pcm,
-  ...['pcm_u8', 'pcm_s8', 'pcm_alaw', 'pcm_mulaw', 'adpcm_ms', 'adpcm_ima_wav', 'flac', 'alac'],
-  ...['mp3', 'mp3float', 'aac', 'opus', 'libopus', 'vorbis', 'libvorbis']
-].join(',')
+const codecs =
+  `${pcm.join(',')},pcm_u8,pcm_s8,pcm_alaw,pcm_mulaw,adpcm_ms,adpcm_ima_wav,flac,alac,` +
+  'mp3,mp3float,aac,opus,libopus,vorbis,libvorbis'
 
 const closedLists = (formatList: string): string[] => [
-  ...['-format_whitelist', formatList],
-  ...['-protocol_whitelist', 'file,pipe'],
-  ...['-codec_whitelist', codecs]
+  '-format_whitelist',
+  formatList,
+  '-protocol_whitelist',
+  'file,pipe'
 ]
 
 /** Name under which a recording stands in its work folder; a person's file name never reaches a command line. */
@@ -41,14 +40,22 @@ const stderrKept = 4096
 export const fromSource = (inputOptions: string[] = []): FfmpegCommand =>
   ffmpegCommand()
     .input(sourceAddress)
-    .inputOptions([...closedLists(formats), ...inputOptions])
+    .inputOptions([...closedLists(formats), '-codec_whitelist', codecs, ...inputOptions])
 
 /** A command that reads raw samples from standard input: 32-bit floats, interleaved. */
 export const fromSamples = (sampleRate: number, channels: number): FfmpegCommand =>
   ffmpegCommand()
     .input('pipe:0')
     .inputFormat('f32le')
-    .inputOptions([...closedLists('f32le'), '-ar', String(sampleRate), '-ac', String(channels)])
+    .inputOptions([
+      ...closedLists('f32le'),
+      '-codec_whitelist',
+      'pcm_f32le',
+      '-ar',
+      String(sampleRate),
+      '-ac',
+      String(channels)
+    ])
 
 const works = (command: string[]): boolean =>
   spawnSync(command[0] ?? '', [...command.slice(1), 'true'], { stdio: 'ignore', timeout: 5000 }).status === 0
@@ -68,7 +75,9 @@ const wrapped = (limits: ProcessLimits): string[] => {
     `--cpu=${Math.ceil(limits.cpuSec)}`,
     `--as=${Math.ceil(limits.memoryBytes)}`,
     `--fsize=${Math.ceil(limits.outputBytes)}`,
-    ...['--nofile=64', '--core=0', '--']
+    '--nofile=64',
+    '--core=0',
+    '--'
   ]
   return [...(prlimit ? ['prlimit', ...bounds] : []), ...unshare]
 }
@@ -129,10 +138,18 @@ const lowerPriority = (pid: number): void => {
   }
 }
 
+/** The arguments fluent-ffmpeg has put together; it is not let near the process, which needs limits it cannot set. */
+const argumentsOf = (command: FfmpegCommand): string[] =>
+  // oxlint-disable-next-line no-underscore-dangle -- the package offers no other way to build without running
+  command._getArguments()
+
 /** Starts ffmpeg with what `command` was built to do. Never throws for what ffmpeg says: see `exit`. */
 export const startFfmpeg = (command: FfmpegCommand, options: ProcessOptions, loglevel = 'error'): MediaProcess =>
-  start('ffmpeg', ['-nostdin', '-hide_banner', '-nostats', '-loglevel', loglevel, ...command._getArguments()], options)
+  start('ffmpeg', ['-nostdin', '-hide_banner', '-nostats', '-loglevel', loglevel, ...argumentsOf(command)], options)
 
-/** Starts ffprobe on the work folder's `source` with `args` saying what to show. */
+/**
+ * Starts ffprobe on the work folder's `source` with `args` saying what to show. Without the list of codecs: ffprobe would
+ * give up on a cover picture, and could not say that a film is one.
+ */
 export const startFfprobe = (args: string[], options: ProcessOptions): MediaProcess =>
   start('ffprobe', ['-hide_banner', '-loglevel', 'warning', ...closedLists(formats), ...args, sourceAddress], options)

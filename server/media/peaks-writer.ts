@@ -36,9 +36,16 @@ export const createPeaksWriter = async (path: string, sampleRate: number, channe
   const folder = createPeakFolder(channels, (level, bucket) => shelves[level]?.put(bucket))
   let end = peakHeaderBytes
 
+  const writeAt = async (bytes: Uint8Array, position: number): Promise<void> => {
+    for (let done = 0; done < bytes.length;) {
+      // A disk that fills up may take a part before it refuses the rest.
+      done += (await file.write(bytes, done, bytes.length - done, position + done)).bytesWritten
+    }
+  }
+
   const append = async (blocks: Buffer[]): Promise<void> => {
     for (const block of blocks) {
-      await file.write(block, 0, block.length, end)
+      await writeAt(block, end)
       end += block.length
     }
   }
@@ -55,7 +62,7 @@ export const createPeaksWriter = async (path: string, sampleRate: number, channe
       folder.finish()
       for (const shelf of shelves) await append(shelf.take())
       const header = peakLayout(sampleRate, channels, folder.frames())
-      await file.write(encodePeakHeader(header), 0, peakHeaderBytes, 0)
+      await writeAt(encodePeakHeader(header), 0)
       return header
     },
     close: () => file.close()

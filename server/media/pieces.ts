@@ -69,8 +69,10 @@ export const cutPieces = async (stream: Readable, folder: string, channels: numb
   }
 
   const writeReady = async (totalFrames: number, margin: number): Promise<void> => {
-    while (head !== undefined && pieces.length * pieceFrames < totalFrames) {
-      const cut = planCut(pieces.length, totalFrames, preSkipOf(head))
+    if (head === undefined) return
+    const preSkip = preSkipOf(head)
+    while (pieces.length * pieceFrames < totalFrames) {
+      const cut = planCut(pieces.length, totalFrames, preSkip)
       if (keptFrom + kept.length < cut.to + margin) return
       await write(cut)
     }
