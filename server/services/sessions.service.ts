@@ -5,7 +5,7 @@ import type { Relation } from '@shared/access/relations'
 import type { Session, TransportState } from '@shared/contracts/sessions'
 import { problem } from '@shared/errors/problems'
 import type { TransportChange } from '@shared/events/realtime'
-import { sessionPosition } from '@shared/timing/clock'
+import { sessionPosition } from '@shared/timing/session-position'
 import type { Db } from '@server/db/knex'
 import type { Actor } from '@server/http/handlers'
 import type { EventsRepo } from '@server/repositories/events.repo'
@@ -47,7 +47,7 @@ export const changedTransport = (
     positionSec: Math.min(Math.max(0, wanted), durationSec),
     rate: change.rate ?? before.rate,
     semitones: change.semitones ?? before.semitones,
-    isPlaying: change.isPlaying ?? (before.isPlaying && !reached.isOver),
+    playing: change.playing ?? reached.playing,
     loop,
     atServerMs
   }
@@ -102,7 +102,7 @@ export const createSessionService = ({ db, sessions, takes, access, events, now 
           positionSec: 0,
           rate: 1,
           semitones: 0,
-          isPlaying: false,
+          playing: false,
           loop: null,
           atServerMs: now()
         }

@@ -2,13 +2,13 @@ import { z } from 'zod'
 import { Instant, Person, Uuid } from '@shared/contracts/common'
 import { defineRoute } from '@shared/contracts/route'
 
-/** The shared playhead: where it was at `atServerMs` and how it goes on from there. */
+/** The shared playhead: where it was at `atServerMs` and how it goes on from there (shared/timing/session-position.ts). */
 export const TransportState = z.object({
   revision: z.number().int(),
   positionSec: z.number().min(0),
   rate: z.number().min(0.2).max(1.5),
   semitones: z.number().min(-12).max(24),
-  isPlaying: z.boolean(),
+  playing: z.boolean(),
   loop: z.object({ startSec: z.number().min(0), endSec: z.number().min(0) }).nullable(),
   atServerMs: z.number()
 })

@@ -14,7 +14,7 @@ const None = z.object({})
 export const TransportChange = z.object({
   ...inSession,
   positionSec: Seconds.optional(),
-  isPlaying: z.boolean().optional(),
+  playing: z.boolean().optional(),
   rate: z.number().min(0.2).max(1.5).optional(),
   semitones: z.number().min(-12).max(24).optional(),
   loop: Span.refine((s) => s.endSec > s.startSec, 'A loop needs a length.')
