@@ -63,7 +63,8 @@ export const ensurePrograms = async (names) => {
   // Another apt at work is waited for, and a slow mirror tried again.
   const patience = ['-qq', '-o', 'DPkg::Lock::Timeout=300', '-o', 'Acquire::Retries=3']
   await run('apt-get', [...patience, 'update'], { env })
-  await withoutMainCluster(() => run('apt-get', [...patience, ...install], { env }))
+  const go = () => run('apt-get', [...patience, ...install], { env })
+  await (packages.includes('postgresql') ? withoutMainCluster(go) : go())
   const still = missing().map((need) => need?.package)
   if (still.length > 0) throw new Trouble(`Still missing: ${still.join(', ')}. Please run: ${command}`)
 }

@@ -24,7 +24,8 @@ import {
   openDatabase,
   postmastersOf,
   processesOf,
-  query
+  query,
+  writeProgram
 } from './support.ts'
 
 /** The account `nobody` of Debian's base-passwd. */
@@ -195,8 +196,7 @@ describe('the accounts it runs under', () => {
     const open = newFolder()
     const folder = path.join(open, 'storage/postgres')
     // A machine without user namespaces, as far as the scripts can see.
-    writeFileSync(path.join(open, 'unshare'), '#!/bin/sh\necho "unshare failed: Operation not permitted" >&2\nexit 1\n')
-    chmodSync(path.join(open, 'unshare'), 0o755)
+    writeProgram(open, 'unshare', ['echo "unshare failed: Operation not permitted" >&2', 'exit 1'])
     const env = { ...process.env, PATH: `${open}:${process.env.PATH}` }
     const first = await openDatabase(folder, { env })
     expect(await query(first.url, 'select 1 as one')).toEqual([{ one: 1 }])

@@ -1,6 +1,16 @@
 // Real processes for the tests of setting up: started, listened to, counted in /proc.
 import { spawn, type ChildProcess, type SpawnOptions } from 'node:child_process'
-import { chmodSync, cpSync, mkdtempSync, readFileSync, readdirSync, readlinkSync, realpathSync, rmSync } from 'node:fs'
+import {
+  chmodSync,
+  cpSync,
+  mkdtempSync,
+  readFileSync,
+  readdirSync,
+  readlinkSync,
+  realpathSync,
+  rmSync,
+  writeFileSync
+} from 'node:fs'
 import { tmpdir } from 'node:os'
 import path from 'node:path'
 import { setTimeout as sleep } from 'node:timers/promises'
@@ -62,6 +72,25 @@ export const openDatabase = async (
   }
   return { process: child, url, close }
 }
+
+/** Runs a driver or script to its end. */
+export const runScript = async (
+  file: string,
+  args: string[],
+  options: SpawnOptions = {}
+): Promise<{ code: number | null; said: string }> => {
+  const child = spawn(process.execPath, [file, ...args], { ...options, stdio: ['ignore', 'pipe', 'pipe'] })
+  let said = ''
+  for (const stream of [child.stdout, child.stderr]) stream?.on('data', (part: Buffer) => (said += part.toString()))
+  const closed = new Promise((resolve) => child.once('close', resolve))
+  const code = await exited(child)
+  await closed
+  return { code, said }
+}
+
+/** An executable shell script in `folder`, for a PATH that leads to it first. */
+export const writeProgram = (folder: string, name: string, lines: string[]): void =>
+  writeFileSync(path.join(folder, name), ['#!/bin/sh', ...lines, ''].join('\n'), { mode: 0o755 })
 
 /** Runs one statement and gives its rows. */
 export const query = async (url: string, sql: string): Promise<Record<string, unknown>[]> => {
