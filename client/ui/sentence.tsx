@@ -1,6 +1,6 @@
 // A setting that reads as a sentence: "60 % to 100 %, up 5 after 4 times", its parts edited where they stand.
 import { useState } from 'react'
-import type { ReactNode } from 'react'
+import type { CSSProperties, ReactNode } from 'react'
 
 export interface SentenceProps {
   /** Names the whole: "Faster". */
@@ -30,7 +30,7 @@ export interface SentenceNumberProps {
 
 // The part is as wide as what stands in it, and never a smaller target than 24 px.
 const partClass =
-  'dotted-edit inline-block h-6 min-w-6 bg-transparent p-0 text-center font-semibold text-ink field-sizing-content'
+  'dotted-edit inline-block h-6 min-w-6 bg-transparent p-0 text-center font-semibold text-ink plumb-part'
 
 /** Type a number (Enter or leaving keeps it, Esc takes it back), or step it with up and down. */
 export function SentenceNumber({ label, value, unit = '', min, max, step = 1, onChange }: SentenceNumberProps) {
@@ -54,8 +54,7 @@ export function SentenceNumber({ label, value, unit = '', min, max, step = 1, on
       aria-valuemax={max}
       aria-valuetext={`${value}${unit}`}
       className={partClass}
-      // For browsers that cannot size a field by its content.
-      style={{ width: CSS.supports?.('field-sizing', 'content') ? undefined : `${shown.length + 1}ch` }}
+      style={{ '--chars': shown.length + 1 } as CSSProperties}
       value={shown}
       onFocus={(event) => {
         setDraft(String(value))

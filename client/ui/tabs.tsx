@@ -31,11 +31,12 @@ export function Tabs<K extends string>({ label, tabs, chosen, onChoose, fill = f
       Home: 0,
       End: tabs.length - 1
     }
-    const next = tabs[targets[event.key] ?? -1]
+    const to = targets[event.key] ?? -1
+    const next = tabs[to]
     if (!next) return
     event.preventDefault()
     onChoose(next.key)
-    list.current?.querySelector<HTMLElement>(`[data-key="${CSS.escape(next.key)}"]`)?.focus()
+    list.current?.querySelectorAll<HTMLElement>('[role="tab"]')[to]?.focus()
   }
 
   const panel = tabs.find(({ key }) => key === chosen)
@@ -50,7 +51,6 @@ export function Tabs<K extends string>({ label, tabs, chosen, onChoose, fill = f
               type="button"
               role="tab"
               id={`${id}-tab-${tab.key}`}
-              data-key={tab.key}
               aria-selected={isChosen}
               aria-controls={isChosen ? `${id}-panel` : undefined}
               tabIndex={isChosen ? 0 : -1}
