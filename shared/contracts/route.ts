@@ -73,7 +73,8 @@ export type QueryOf<D extends RouteDef> = z.infer<D['query']>
 export type BodyOf<D extends RouteDef> = z.infer<D['body']>
 export type ResponseOf<D extends RouteDef> = z.infer<D['response']>
 
-type Need<Key extends string, T> = keyof T extends never
+// The type of an empty z.object is Record<string, never>: no field has a name of its own.
+type Need<Key extends string, T> = string extends keyof T
   ? { [K in Key]?: undefined }
   : Partial<T> extends T
     ? { [K in Key]?: T }
