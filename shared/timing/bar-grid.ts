@@ -58,12 +58,14 @@ export const createBarGrid = (marks: readonly MeterMark[]): BarGrid => {
   const ofWholeNotes = (wholeNotes: number) => stretchAt((stretch) => stretch.wholeNotes, wholeNotes)
 
   const wholeNotesAt = ({ bar, beat }: Position): number => {
-    const { meter, ...start } = ofBar(bar)
+    const start = ofBar(bar)
+    const { meter } = start
     return start.wholeNotes + ((bar - start.bar) * meter.upper + (beat.n - beat.d) / beat.d) / meter.lower
   }
 
   const placeAtWholeNotes = (wholeNotes: number, tolerance: number): Position => {
-    const { meter, ...start } = ofWholeNotes(wholeNotes)
+    const start = ofWholeNotes(wholeNotes)
+    const { meter } = start
     const beats = (wholeNotes - start.wholeNotes) * meter.lower
     const bars = Math.floor(beats / meter.upper)
     const inBar = beats - bars * meter.upper
@@ -75,7 +77,8 @@ export const createBarGrid = (marks: readonly MeterMark[]): BarGrid => {
   }
 
   const normalize = ({ bar, beat }: Position): Position => {
-    const { meter, ...start } = ofBar(bar)
+    const start = ofBar(bar)
+    const { meter } = start
     const before = start.beats + (bar - start.bar) * meter.upper
     const { whole, part } = splitCount(add(beat, rational(-1)), before)
     const target = stretchAt((stretch) => stretch.beats, whole)
@@ -86,13 +89,15 @@ export const createBarGrid = (marks: readonly MeterMark[]): BarGrid => {
 
   const pulsesAt = (position: Position): Count => {
     const { bar, beat } = normalize(position)
-    const { meter, ...start } = ofBar(bar)
+    const start = ofBar(bar)
+    const { meter } = start
     const inBar = multiply(add(beat, rational(-1)), rational(1, meter.pulse))
     return splitCount(inBar, start.pulses + (bar - start.bar) * pulsesPerBar(meter))
   }
 
   const placeAtPulses = ({ whole, part }: Count): Position => {
-    const { meter, ...start } = stretchAt((stretch) => stretch.pulses, whole)
+    const start = stretchAt((stretch) => stretch.pulses, whole)
+    const { meter } = start
     const bars = Math.floor((whole - start.pulses) / pulsesPerBar(meter))
     const inBar = whole - start.pulses - bars * pulsesPerBar(meter)
     return {

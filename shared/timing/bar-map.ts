@@ -57,7 +57,7 @@ export const createBarMap = (body: BarMapBody): BarMap | null => {
   const grid = createBarGrid(body.meters)
   const knots: Knot[] = body.anchors.map(({ sec, position }) => ({
     sec,
-    position: grid.normalize(position),
+    position,
     wholeNotes: grid.wholeNotesAt(position)
   }))
   const secPerWhole = knots

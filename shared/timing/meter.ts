@@ -24,9 +24,6 @@ export const readMeter = (text: string): Meter | null => {
 /** `6/8`. */
 export const writeMeter = (meter: Meter): string => `${meter.upper}/${meter.lower}`
 
-export const sameMeter = (a: Meter, b: Meter): boolean =>
-  a.upper === b.upper && a.lower === b.lower && a.pulse === b.pulse
-
 /** Beats of the lower figure in a bar. */
 export const beatsPerBar = (meter: Meter): number => meter.upper
 

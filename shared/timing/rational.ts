@@ -5,6 +5,7 @@ import type { Rational } from '@shared/timing/types'
 /** Denominator of places that are no plain fraction of a beat: 2^-40 of a beat is under 4 picoseconds at 15 beats a minute. */
 export const FINE = 2 ** 40
 
+/** Greatest common divisor, never negative; 0 for two zeros. */
 const gcd = (a: number, b: number): number => {
   let [x, y] = [Math.abs(a), Math.abs(b)]
   while (y > 0) [x, y] = [y, x % y]
@@ -32,6 +33,10 @@ export const nearestRational = (value: number, d = FINE): Rational => {
 /** n/d as a number. */
 export const toNumber = (a: Rational): number => a.n / a.d
 
+/** Whether n and d have no common divisor, d is above 0 and both are safe integers. */
+export const isReduced = ({ n, d }: Rational): boolean =>
+  Number.isSafeInteger(n) && Number.isSafeInteger(d) && d >= 1 && (d === 1 || gcd(n, d) === 1)
+
 /** a + b, reduced. */
 export const add = (a: Rational, b: Rational): Rational => {
   const common = gcd(a.d, b.d)
@@ -40,9 +45,6 @@ export const add = (a: Rational, b: Rational): Rational => {
 
 /** -a. */
 export const negate = (a: Rational): Rational => ({ n: 0 - a.n, d: a.d })
-
-/** a - b, reduced. */
-export const subtract = (a: Rational, b: Rational): Rational => add(a, negate(b))
 
 /** a * b, reduced. */
 export const multiply = (a: Rational, b: Rational): Rational => {

@@ -42,22 +42,25 @@ export const changeMeter = (body: BarMapBody, bar: BarIndex, meter: Meter | null
   const implied = body.meters.length === 0 && bar > 1 ? [{ bar: 1, meter: COMMON_METER }] : body.meters
   const meters = [...implied.filter((mark) => mark.bar < bar), ...(meter ? [{ bar, meter }] : [])]
   const line = { bar, beat: rational(1) }
-  const shiftTo = (grid: BarGrid) => grid.pulsesAt(line).whole - old.pulsesAt(line).whole
-  const carry = (grid: BarGrid, position: Position): Position => {
-    const { whole, part } = old.pulsesAt(position)
-    return grid.placeAtPulses({ whole: whole + shiftTo(grid), part })
+  const carryTo = (grid: BarGrid) => {
+    const shift = grid.pulsesAt(line).whole - old.pulsesAt(line).whole
+    return (position: Position): Position => {
+      const { whole, part } = old.pulsesAt(position)
+      return grid.placeAtPulses({ whole: whole + shift, part })
+    }
   }
   for (const mark of implied.filter((later) => later.bar > bar)) {
     const grid = createBarGrid(meters)
-    const nearest = nearestBarLine(grid, carry(grid, { bar: mark.bar, beat: rational(1) }))
+    const nearest = nearestBarLine(grid, carryTo(grid)({ bar: mark.bar, beat: rational(1) }))
     meters.push({ ...mark, bar: Math.max(nearest, (meters.at(-1)?.bar ?? bar) + 1) })
   }
   const grid = createBarGrid(meters)
+  const carry = carryTo(grid)
   const marks = body.marks.map((mark) => ({
     ...mark,
-    bar: nearestBarLine(grid, carry(grid, { bar: mark.bar, beat: rational(1) }))
+    bar: nearestBarLine(grid, carry({ bar: mark.bar, beat: rational(1) }))
   }))
-  return { ...placeAnchors(body, ({ position }) => carry(grid, position)), meters, marks: firstOfEachBar(marks) }
+  return { ...placeAnchors(body, ({ position }) => carry(position)), meters, marks: firstOfEachBar(marks) }
 }
 
 /** One bar more at `bar`; it takes the meter of the bar that was there. */

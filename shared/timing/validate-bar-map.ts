@@ -2,7 +2,7 @@ import type { OperationFault } from '@shared/documents/document'
 import { err, ok, type Result } from '@shared/result'
 import { createBarGrid } from '@shared/timing/bar-grid'
 import { LOWER_FIGURES, MAX_UPPER } from '@shared/timing/meter'
-import { equal } from '@shared/timing/rational'
+import { isReduced } from '@shared/timing/rational'
 import { timeWords } from '@shared/timing/time-words'
 import type { Anchor, BarMapBody, Meter, Rational } from '@shared/timing/types'
 
@@ -89,8 +89,8 @@ const anchorFault = ({ anchors, meters }: BarMapBody): OperationFault | null => 
       return { message: 'A fixed place lies outside any take.', path }
     if (!isBar(position.bar) || !isFraction(position.beat))
       return { message: 'A fixed place has no bar and beat.', path }
-    const place = grid.normalize(position)
-    if (place.bar !== position.bar || !equal(place.beat, position.beat) || place.beat.d !== position.beat.d) {
+    const { n, d } = position.beat
+    if (n >= (grid.meterAt(position.bar).upper + 1) * d || !isReduced(position.beat)) {
       return { message: `Bar ${position.bar} has no such beat in its meter.`, path }
     }
     const wholeNotes = grid.wholeNotesAt(position)
@@ -105,17 +105,18 @@ const anchorFault = ({ anchors, meters }: BarMapBody): OperationFault | null => 
 }
 
 const stepFault = (before: Anchor, after: Anchor, pulses: number): string | null => {
-  const [here, there] = [timeWords(before.sec), timeWords(after.sec)]
+  const here = () => timeWords(before.sec)
+  const there = () => timeWords(after.sec)
   if (after.sec - before.sec < MIN_ANCHOR_GAP_SEC) {
-    return `Bar ${after.position.bar} at ${there} is not after bar ${before.position.bar} at ${here}.`
+    return `Bar ${after.position.bar} at ${there()} is not after bar ${before.position.bar} at ${here()}.`
   }
   if (!(pulses > 0)) {
-    return `The sound at ${there} comes after ${here}, so it cannot be bar ${after.position.bar} after bar ${before.position.bar}.`
+    return `The sound at ${there()} comes after ${here()}, so it cannot be bar ${after.position.bar} after bar ${before.position.bar}.`
   }
   const tempo = (60 * pulses) / (after.sec - before.sec)
   if (tempo < TEMPO_BOUNDS.min || tempo > TEMPO_BOUNDS.max) {
     const figure = tempo < 1 ? 'less than one beat' : `${Math.round(tempo)} beats`
-    return `From ${here} to ${there} the tempo would be ${figure} a minute.`
+    return `From ${here()} to ${there()} the tempo would be ${figure} a minute.`
   }
   return null
 }
