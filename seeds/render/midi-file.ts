@@ -1,5 +1,5 @@
-// A Standard MIDI File of one track. 1000 ticks a quarter at 60 quarters a minute would be one tick a millisecond;
-// 10 000 ticks a second leave the renderer's own block of 64 samples as the coarsest step.
+// A Standard MIDI File (format 0, one track) at a steady 10 000 ticks a second: what happens when is reckoned in seconds
+// elsewhere, and the coarsest step left is the renderer's own block of 64 samples.
 export interface MidiEvent {
   sec: number
   bytes: number[]
