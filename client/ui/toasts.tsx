@@ -24,6 +24,7 @@ export const useToast = (): ((toast: Toast) => void) => useContext(ToastContext)
 
 const atMost = 3
 
+/** A page with a bar at its foot sets `--foot` to its height on <html>, so that toasts never cover it. */
 export function Toasts({ children }: { children: ReactNode }) {
   const [shown, setShown] = useState<Shown[]>([])
   const nextId = useRef(0)
@@ -36,7 +37,7 @@ export function Toasts({ children }: { children: ReactNode }) {
   return (
     <ToastContext value={toast}>
       {children}
-      <output className="pointer-events-none fixed inset-x-3 bottom-3 z-40 grid justify-items-start gap-2">
+      <output className="pointer-events-none fixed inset-x-3 bottom-[calc(var(--foot,0px)+0.75rem)] z-40 grid justify-items-start gap-2">
         {shown.map((one) => (
           <ToastLine key={one.id} toast={one} onLeave={leave} />
         ))}
