@@ -65,7 +65,10 @@ const feed = async (input: Writable, chunk: Buffer): Promise<void> => {
   over.abort()
 }
 
-/** Bytes from a pipe as whole frames of floats; what is left over waits for the next chunk. */
+/** +24 dB of full scale: beyond it a damaged file speaks, and encoders refuse what is near infinity. */
+const loudestSample = 16
+
+/** Bytes from a pipe as whole frames of sound floats; what is left over waits for the next chunk. */
 const createFrameReader = (channels: number) => {
   const frameBytes = channels * 4
   let rest: Buffer = Buffer.alloc(0)
@@ -73,10 +76,17 @@ const createFrameReader = (channels: number) => {
     const joined = rest.length === 0 ? chunk : Buffer.concat([rest, chunk])
     const whole = joined.length - (joined.length % frameBytes)
     rest = joined.subarray(whole)
-    const isAligned = joined.byteOffset % 4 === 0
-    return isAligned
-      ? new Float32Array(joined.buffer, joined.byteOffset, whole / 4)
-      : new Float32Array(Uint8Array.from(joined.subarray(0, whole)).buffer)
+    const samples =
+      joined.byteOffset % 4 === 0
+        ? new Float32Array(joined.buffer, joined.byteOffset, whole / 4)
+        : new Float32Array(Uint8Array.from(joined.subarray(0, whole)).buffer)
+    for (let at = 0; at < samples.length; at++) {
+      const sample = samples[at] ?? 0
+      if (!(sample <= loudestSample && sample >= -loudestSample)) {
+        samples[at] = Number.isNaN(sample) ? 0 : Math.sign(sample) * loudestSample
+      }
+    }
+    return samples
   }
 }
 
@@ -88,8 +98,10 @@ const distribute = async (job: Job, decoder: MediaProcess, encoders: MediaProces
   const toFrames = createFrameReader(sound.channels)
   let told = 0
   for await (const chunk of decoder.stdout as AsyncIterable<Buffer>) {
-    await peaks.push(toFrames(chunk))
-    await Promise.all(encoders.map(({ stdin }) => stdin && feed(stdin, chunk)))
+    const samples = toFrames(chunk)
+    const bytes = Buffer.from(samples.buffer, samples.byteOffset, samples.byteLength)
+    await peaks.push(samples)
+    await Promise.all(encoders.map(({ stdin }) => stdin && feed(stdin, bytes)))
     const sec = peaks.frames() / sound.sampleRate
     if (sec > bounds.maxDurationSec) return mediaFault('too-long')
     if (sec > bounds.maxLeadingSilenceSec && peaks.loudest() < silenceThreshold) return mediaFault('silent')
