@@ -4,48 +4,16 @@ import { createHash } from 'node:crypto'
 import { fileURLToPath } from 'node:url'
 import { join } from 'node:path'
 import type { Knex } from 'knex'
-import type { CommentKind } from '@shared/contracts/comments'
-import type { Reach } from '@shared/contracts/takes'
 import { chartDocument } from '@shared/music/chart-document'
-import type { ChartBody } from '@shared/music/types'
 import { createBarMap } from '@shared/timing/bar-map'
 import { barMapDocument } from '@shared/timing/bar-map-document'
-import type { BarMapBody, Position } from '@shared/timing/types'
 import { ingestRecording } from '@server/media/ingest'
 import type { MediaStorage } from '@server/media/storage'
 import { demoGroup, personaId } from './01_personas'
+import type { DemoComment, DemoTake, DemoTune } from './render/demo-types'
 
 const folder = fileURLToPath(new URL('./demo/', import.meta.url))
 const read = async <T>(name: string): Promise<T> => JSON.parse(await readFile(join(folder, name), 'utf8')) as T
-
-interface DemoTune {
-  slug: string
-  title: string
-  chart: ChartBody
-}
-interface DemoTake {
-  slug: string
-  title: string
-  tune: string
-  player: string
-  reach: Reach
-  named: string[]
-  file: string
-  mime: string
-  bytes: number
-  barMap: BarMapBody
-}
-interface DemoComment {
-  take: string
-  author: string
-  kind: CommentKind
-  from: Position
-  to: Position
-  text: string
-  state: 'open' | 'settled' | null
-  agoHours: number
-  replies: { author: string; agoHours: number; text: string }[]
-}
 
 export const demoTakes = [
   'slack-tide-ines-second-try',
@@ -132,8 +100,7 @@ const seedComments = async (trx: Knex, now: Date): Promise<void> => {
     if (!map) throw new Error(`${comment.take} has no bar map`)
     const id = demoId(`comment ${index}`)
     const at = hoursBefore(now, comment.agoHours)
-    const lastReply = comment.replies.at(-1)
-    const settledAt = lastReply ? hoursBefore(now, lastReply.agoHours - 0.2) : at
+    const isSettled = comment.state === 'settled'
     await trx('comments').insert({
       id,
       take_id: demoId(comment.take),
@@ -142,8 +109,8 @@ const seedComments = async (trx: Knex, now: Date): Promise<void> => {
       text: comment.text,
       start_sec: map.secAt(comment.from),
       end_sec: map.secAt(comment.to),
-      settled_at: comment.state === 'settled' ? settledAt : null,
-      settled_by: comment.state === 'settled' ? personaId(comment.author) : null,
+      settled_at: isSettled ? hoursBefore(now, comment.settledAgoHours ?? comment.agoHours) : null,
+      settled_by: isSettled ? personaId(comment.settledBy ?? comment.author) : null,
       created_at: at,
       updated_at: at
     })
