@@ -60,7 +60,8 @@ export const useDocument = <Body, Op>({
     () =>
       createDocumentQueue<Body, Op>({
         kind,
-        send: (body) => callRoute(routes.edit, { params, body } as unknown as RequestOf<RouteDef>) as Promise<DocumentState<Body>>,
+        send: (body) =>
+          callRoute(routes.edit, { params, body } as unknown as RequestOf<RouteDef>) as Promise<DocumentState<Body>>,
         keep: (edit) => outbox.put(memberId, where, edit.id, edit),
         forget: (id) => outbox.remove(id),
         onChange: redraw,

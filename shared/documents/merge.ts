@@ -15,7 +15,11 @@ export interface EditFault extends OperationFault {
 }
 
 /** All operations one after the other, or the first fault; never half of them. */
-export const applyAll = <Body, Op>(kind: DocumentKind<Body, Op>, body: Body, operations: readonly Op[]): Result<AppliedEdit<Body, Op>, EditFault> => {
+export const applyAll = <Body, Op>(
+  kind: DocumentKind<Body, Op>,
+  body: Body,
+  operations: readonly Op[]
+): Result<AppliedEdit<Body, Op>, EditFault> => {
   let now = body
   let inverse: Op[] = []
   const parts = new Set<string>()
