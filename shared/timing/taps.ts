@@ -61,7 +61,7 @@ export const undoTap = (taps: readonly Sec[]): Sec[] => taps.slice(0, -1)
  * counted (missed and doubled ones found, see `countSteps`), then evened out against the count by robust local lines (see
  * `localLines`), which follow a drifting tempo and take most of the hand's jitter away; about 20 ms of it is usual
  * (B. H. Repp, "Sensorimotor synchronization", Psychonomic Bulletin & Review 12, 2005, figure from memory). Simulated taps
- * with 20 ms of jitter, 4 % missed and 3 % doubled leave anchors within 8 ms (root mean square) at 120 beats a minute.
+ * with 20 ms of jitter, 4 % missed and 3 % doubled leave anchors about 8 ms off (root mean square) at 120 beats a minute.
  */
 export const fitTaps = (input: TapInput): Result<TapFit, OperationFault> => {
   const { taps, mode, meters, rate, lagSec, newId } = input
