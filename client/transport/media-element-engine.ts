@@ -39,6 +39,7 @@ export const createMediaElementPlayer = (deps: MediaElementDeps = {}): Player =>
   let source: PlayerSource | null = null
   let state: Player['state'] = 'empty'
   let rate = 1
+  let trim = 1
   let volume = defaultVolume
   let loop: PlayerLoop | null = null
   let turns = 0
@@ -71,7 +72,7 @@ export const createMediaElementPlayer = (deps: MediaElementDeps = {}): Player =>
       return element.currentTime
     }
     const late = (graph?.latencySec() ?? 0) * rate
-    return Math.max(0, Math.min(durationSec(), clock.read(element.currentTime, now(), rate) - late))
+    return Math.max(0, Math.min(durationSec(), clock.read(element.currentTime, now(), rate * trim) - late))
   }
 
   // Loudness. The graph is made at the first play, inside the person's tap, as browsers want it.
@@ -145,7 +146,7 @@ export const createMediaElementPlayer = (deps: MediaElementDeps = {}): Player =>
   const applyRate = () => {
     // load() puts the rate back to the default one, so both are set.
     element.defaultPlaybackRate = rate
-    element.playbackRate = rate
+    element.playbackRate = rate * trim
     element.preservesPitch = true
   }
 
@@ -347,6 +348,12 @@ export const createMediaElementPlayer = (deps: MediaElementDeps = {}): Player =>
       applyRate()
       events.emit('rate', { rate })
       look()
+    },
+    setTrim: (factor) => {
+      if (factor === trim) return
+      trim = factor
+      clock.reset()
+      applyRate()
     },
     setPitch: () => {},
     setVolume: (next) => {

@@ -67,6 +67,8 @@ export interface Player {
   pause(at?: Sec): void
   seek(sec: Sec, at?: Sec): void
   setRate(rate: number, at?: Sec): void
+  /** A few percent faster or slower without being another speed: how listeners are kept together. 1 is none. */
+  setTrim(factor: number): void
   setPitch(semitones: number, at?: Sec): void
   setVolume(volume: number): void
   setLoop(loop: PlayerLoop | null, at?: Sec): void
