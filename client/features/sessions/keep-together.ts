@@ -1,0 +1,162 @@
+// Brings one player to where the shared playhead is and keeps it there: a jump when far off, a hardly audible trim when near.
+import type { Player } from '@client/transport/player'
+import { sessionPosition, type SharedPlayback } from '@shared/timing/session-position'
+import type { Sec } from '@shared/units'
+
+/** Farther off than this is mended by a jump, take seconds at full speed. */
+export const jumpBeyondSec = 0.18
+/** Nearer than this is left alone: two clocks and a media element are no better. */
+export const goodEnoughSec = 0.008
+/** The most that speed is bent to catch up. */
+export const maxTrim = 0.06
+/** A gap is closed in about this time, seconds. */
+const closeInSec = 0.8
+/** After a jump or a start the element needs this long before its place can be believed, ms. */
+const settleMs = 350
+const lookEveryMs = 150
+
+interface Deps {
+  player: Player
+  /** Server time now, ms; null until the clock is known. */
+  serverNow(): number | null
+  timeout(work: () => void, ms: number): () => void
+  localNow(): number
+  onBlocked(): void
+}
+
+/** The shortest way from where we are to where we should be, counting through a loop's end. */
+export const gapSec = (heard: Sec, wanted: Sec, loop: { startSec: Sec; endSec: Sec } | null): Sec => {
+  const straight = wanted - heard
+  if (!loop) return straight
+  const length = loop.endSec - loop.startSec
+  const inside = (sec: Sec): boolean => sec >= loop.startSec - 0.25 && sec <= loop.endSec + 0.25
+  if (!inside(heard) || !inside(wanted) || length <= 0) return straight
+  return straight - Math.round(straight / length) * length
+}
+
+export const createKeepTogether = ({ player, serverNow, timeout, localNow, onBlocked }: Deps) => {
+  let shared: SharedPlayback | null = null
+  let cancel = (): void => undefined
+  /** Until then (local ms) the player is settling and nothing is judged. */
+  let settledAt = 0
+  /** How late this browser starts and jumps, learned: seconds of take at full speed. */
+  let lagSec = 0.04
+  let isJudgingLag = false
+
+  const wantedNow = (): { positionSec: Sec; playing: boolean } | null => {
+    const now = serverNow()
+    return shared && now !== null ? sessionPosition(shared, now) : null
+  }
+  const sameLoop = (): boolean => {
+    const mine = player.loop?.span ?? null
+    const theirs = shared?.loop ?? null
+    return (
+      mine === theirs ||
+      (mine !== null &&
+        theirs !== null &&
+        Math.abs(mine.startSec - theirs.startSec) < 1e-6 &&
+        Math.abs(mine.endSec - theirs.endSec) < 1e-6)
+    )
+  }
+  const settle = (): void => {
+    settledAt = localNow() + settleMs
+    isJudgingLag = true
+    player.setTrim(1)
+  }
+  const goTo = (positionSec: Sec): void => {
+    if (!shared) return
+    player.seek(positionSec + (shared.playing ? lagSec * shared.rate : 0))
+    settle()
+  }
+
+  const start = (): void => {
+    const wanted = wantedNow()
+    if (!wanted?.playing) return
+    goTo(wanted.positionSec)
+    void player.play().then((isOut) => {
+      if (!isOut) onBlocked()
+      settle()
+    })
+  }
+
+  const follow = (): void => {
+    const now = serverNow()
+    if (!shared || now === null) return
+    const wanted = sessionPosition(shared, now)
+    const isSounding = player.state === 'playing'
+    if (!wanted.playing) {
+      if (isSounding) player.pause()
+      return
+    }
+    // The start lies a moment ahead, so that everybody can be ready for it.
+    if (now < shared.atServerMs) return
+    if (!isSounding) {
+      if (player.state === 'ready') start()
+      return
+    }
+    if (localNow() < settledAt) return
+    const gap = gapSec(player.heardPosition, wanted.positionSec, shared.loop)
+    if (isJudgingLag) {
+      // What is left over after a start or jump is this browser's own lateness.
+      if (Math.abs(gap) < 0.4) lagSec = Math.max(0, Math.min(0.3, lagSec + 0.5 * (gap / shared.rate)))
+      isJudgingLag = false
+    }
+    if (Math.abs(gap) > jumpBeyondSec * Math.max(0.5, shared.rate)) return goTo(wanted.positionSec)
+    const bend = Math.max(-maxTrim, Math.min(maxTrim, gap / closeInSec / shared.rate))
+    player.setTrim(Math.abs(gap) < goodEnoughSec ? 1 : 1 + bend)
+  }
+
+  const tick = (): void => {
+    cancel()
+    follow()
+    cancel = timeout(tick, lookEveryMs)
+  }
+
+  return {
+    /** A new state of the shared transport. */
+    apply: (state: SharedPlayback): void => {
+      const before = shared
+      shared = state
+      player.setRate(state.rate)
+      if (!sameLoop()) player.setLoop(state.loop ? { span: state.loop } : null)
+      const now = serverNow()
+      if (now === null) return
+      if (!state.playing) {
+        player.pause()
+        if (Math.abs(player.heardPosition - state.positionSec) > 0.005) player.seek(state.positionSec)
+        player.setTrim(1)
+      } else if (before?.playing && player.state === 'playing') {
+        // Playing on: only a real jump is made at once, the rest is bent into place.
+        const wanted = sessionPosition(state, now)
+        const gap = gapSec(player.heardPosition, wanted.positionSec, state.loop)
+        if (Math.abs(gap) > jumpBeyondSec && now >= state.atServerMs) goTo(wanted.positionSec)
+      } else if (now < state.atServerMs) {
+        player.seek(state.positionSec)
+        const early = Math.max(0, state.atServerMs - now - lagSec * 1000)
+        cancel()
+        cancel = timeout(() => {
+          start()
+          tick()
+        }, early)
+        return
+      }
+      tick()
+    },
+    wantedSec: (): Sec | null => wantedNow()?.positionSec ?? null,
+    /** How far the player is from the shared playhead right now, seconds; null while nothing is shared. */
+    gap: (): Sec | null => {
+      const wanted = wantedNow()
+      return wanted ? gapSec(player.heardPosition, wanted.positionSec, shared?.loop ?? null) : null
+    },
+    turned: (): void => {
+      // The element's loop comes round a little late every time, and needs a moment to be believed again.
+      settledAt = Math.max(settledAt, localNow() + 120)
+    },
+    stop: (): void => {
+      cancel()
+      shared = null
+      player.setTrim(1)
+    }
+  }
+}
+export type KeepTogether = ReturnType<typeof createKeepTogether>
