@@ -28,7 +28,8 @@ const renditionRate = (sampleRate: number): number => (sampleRate === 44_100 ? s
 
 /**
  * AAC in MP4 with its index in front, which browsers seek in to 2 ms. The fast coder takes less than half the time of
- * the other (10.5 s against 23.9 s for 10 minutes of stereo) and is the better one at high rates (ffmpeg's manual).
+ * the other (10.5 s against 23.9 s for 10 minutes of stereo) and came nearer to the original at this rate (residual -29.5
+ * against -28.3 dB, largest single error 0.14 against 0.39 of full scale on plucked tones with noisy attacks).
  */
 export const renditionCommand = (sound: Sound): FfmpegCommand =>
   fromSamples(sound.sampleRate, sound.channels)

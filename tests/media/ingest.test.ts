@@ -165,7 +165,9 @@ describe('loudness', () => {
   // that every sample misses the crest; read within +0.2 and -0.4 dB).
   it('sees a peak between the samples', async () => {
     const scratch = scratchFolder()
-    const tone = `aevalsrc='0.5*sin(2*PI*12000*t+PI/4)|0.5*sin(2*PI*12000*t+PI/4)':s=48000:d=3`
+    // Faded in and out: a tone that is switched on has a true peak of its own at the edge.
+    const crest = '0.5*min(1,5*min(t,3-t))*sin(2*PI*12000*t+PI/4)'
+    const tone = `aevalsrc='${crest}|${crest}':s=48000:d=3`
     const source = makeRecording(scratch, 'tone.wav', ['-f', 'lavfi', '-i', tone], '-c:a', 'pcm_f32le')
     expect(decode(source).every((sample) => Math.abs(sample) < 0.36)).toBe(true)
     const { loudness } = await ingest(source, join(scratch, 'media'))
