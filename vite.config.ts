@@ -14,7 +14,10 @@ const project = (name: string, extra: Record<string, unknown> = {}) => ({
 
 // Given by `npm run dev`: where the server answers while Vite serves the page.
 const api = process.env['PLUMBLINE_DEV_API']
-const proxy = api ? { '/api': api, '/healthz': api, '/socket.io': { target: api, ws: true } } : {}
+// The host stays as the browser sent it: the server takes writes from its own origin only.
+const proxy = api
+  ? { '/api': { target: api }, '/healthz': { target: api }, '/socket.io': { target: api, ws: true } }
+  : {}
 
 export default defineConfig({
   server: { proxy },
