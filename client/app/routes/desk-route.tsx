@@ -1,10 +1,7 @@
-import { AppShell } from '@client/ui/app-shell'
-import { Page } from '@client/ui/page'
+import { useParams } from 'react-router-dom'
+import { Desk } from '@client/app/desk/desk'
 
 export function DeskRoute() {
-  return (
-    <AppShell>
-      <Page title="desk">{null}</Page>
-    </AppShell>
-  )
+  const { takeId = '' } = useParams()
+  return <Desk key={takeId} takeId={takeId} />
 }

@@ -1,0 +1,23 @@
+import { useEffect, useState } from 'react'
+import type { Take } from '@shared/contracts/takes'
+import { audioUrl } from '@client/features/takes/api'
+import { createMediaElementPlayer } from '@client/transport/media-element-engine'
+import type { Player } from '@client/transport/player'
+
+/** The sound of a take for as long as its desk is open; null before the first drawing. */
+export const useDeskPlayer = (take: Take, onTrouble: (message: string) => void): Player | null => {
+  const [player, setPlayer] = useState<Player | null>(null)
+  const { id, state, durationSec, gainDb } = take
+  useEffect(() => {
+    const made = createMediaElementPlayer()
+    made.on('fault', ({ message }) => onTrouble(message))
+    made.on('blocked', () => onTrouble('Press play once more: the browser lets sound out after a tap.'))
+    setPlayer(made)
+    return () => made.dispose()
+  }, [id, onTrouble])
+  useEffect(() => {
+    if (!player || state !== 'ready' || durationSec === null) return
+    void player.load({ url: audioUrl(id), durationSec, gainDb: gainDb ?? 0 })
+  }, [player, id, state, durationSec, gainDb])
+  return player
+}

@@ -1,0 +1,28 @@
+import type { ReactNode } from 'react'
+import { Initials } from '@client/ui/initials'
+import { RelativeTime } from '@client/ui/relative-time'
+import type { Sending } from './changes'
+
+export interface SaidByProps {
+  author: { id: string; name: string }
+  at: string
+  sending?: Sending
+  /** Between name and time: the kind, who settled it. */
+  words?: readonly string[]
+  children?: ReactNode
+}
+
+/** Who said it, as what, when; what can be done with it stands behind. */
+export function SaidBy({ author, at, sending, words = [], children }: SaidByProps) {
+  return (
+    <div className="mt-1.5 flex items-start gap-2.5 text-sm text-pencil">
+      <Initials id={author.id} name={author.name} decorative />
+      <p className="flex min-w-0 flex-wrap items-center gap-x-1.5 pt-0.5">
+        <span>{[author.name, ...words].join(' · ')}</span>
+        <span aria-hidden="true">·</span>
+        {sending && !sending.refused ? <span>sending …</span> : <RelativeTime at={at} notFocusable />}
+        {children}
+      </p>
+    </div>
+  )
+}
