@@ -1,6 +1,6 @@
 // Where recordings lie. Names inside it are made by the server alone; what comes from outside is only ever a checked id.
 import { createReadStream } from 'node:fs'
-import { copyFile, mkdir, readdir, rename, rm, stat } from 'node:fs/promises'
+import { copyFile, mkdir, open, readdir, rename, rm, stat } from 'node:fs/promises'
 import { dirname, isAbsolute, join, relative, resolve } from 'node:path'
 import type { Readable } from 'node:stream'
 import { storageError } from './faults.ts'
@@ -76,6 +76,12 @@ const moveFile = async (from: string, to: string): Promise<void> => {
 
 const pieceFile = (piece: number): string => `${String(Math.trunc(piece)).padStart(5, '0')}.ogg`
 
+/** What is acknowledged survives a power cut: the bytes, then the name, are on the disk. */
+const sync = async (path: string): Promise<void> => {
+  const handle = await open(path, 'r')
+  await handle.sync().finally(() => handle.close())
+}
+
 const fileOfPart = (part: TakePart): string[] => {
   if (part.kind === 'piece') return ['media', piecesFolder, pieceFile(part.piece)]
   if (part.kind === 'original') return ['original']
@@ -136,7 +142,9 @@ export const createLocalStorage = (root: string): MediaStorage => {
       const target = inTake(takeId, 'original')
       try {
         await mkdir(dirname(target), { recursive: true, mode: 0o700 })
+        await sync(uploaded)
         await moveFile(uploaded, target)
+        await sync(dirname(target))
         return { bytes: (await stat(target)).size }
       } catch (error) {
         throw storageError(error)
