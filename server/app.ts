@@ -3,6 +3,7 @@ import { createServer, type Server as HttpServer } from 'node:http'
 import { createServer as createTlsServer } from 'node:https'
 import { readFileSync } from 'node:fs'
 import { join } from 'node:path'
+import compression from 'compression'
 import express from 'express'
 import pg from 'pg'
 import type { Relation } from '@shared/access/relations'
@@ -16,6 +17,7 @@ import { siteRoutes } from '@shared/contracts/site'
 import { recordingRoutes, takeRoutes } from '@shared/contracts/takes'
 import { chartRoutes, tuneRoutes } from '@shared/contracts/tunes'
 import { problem } from '@shared/errors/problems'
+import { type Bounds, limits } from '@shared/limits'
 import { chartDocument } from '@shared/music/chart-document'
 import { barMapDocument } from '@shared/timing/bar-map-document'
 import { createRelations } from '@server/access/relations'
@@ -73,9 +75,12 @@ export interface AppDeps {
   now(): number
   /** Tests drive many people from one address. */
   limitScale?: number
+  /** Other sizes than shared/limits.ts says, for tests of what happens past them. */
+  bounds?: Partial<Bounds>
 }
 
-export const buildApp = async ({ config, log, now, limitScale = 1 }: AppDeps) => {
+export const buildApp = async ({ config, log, now, limitScale = 1, bounds: given }: AppDeps) => {
+  const bounds: Bounds = { ...limits, ...given }
   const db = connect(config.databaseUrl)
   const pool = new pg.Pool({ connectionString: config.databaseUrl, max: 6, application_name: 'plumbline-sign-in' })
   pool.on('error', (error) => log.warn('db', 'a sign-in connection was lost', { error: error.message }))
@@ -116,9 +121,10 @@ export const buildApp = async ({ config, log, now, limitScale = 1 }: AppDeps) =>
     events,
     audit,
     storage,
-    queue
+    queue,
+    bounds
   })
-  const recordings = createRecordingService({ db, recordings: createRecordingsRepo(db), takes, storage })
+  const recordings = createRecordingService({ db, recordings: createRecordingsRepo(db), takes, storage, bounds })
   const comments = createCommentService({ db, comments: createCommentsRepo(db), takes: takesRepo, events })
   const groupEvents = createGroupEventService({ events, access: accessRepo })
   const audibleSessions = async (userId: string, takeIds: string[]) => {
@@ -146,12 +152,11 @@ export const buildApp = async ({ config, log, now, limitScale = 1 }: AppDeps) =>
     check: accounts.check,
     now
   })
-  const limits = createRateLimits(limitScale)
+  const rates = createRateLimits(limitScale)
   const app = express()
   app.disable('x-powered-by')
-  app.set('etag', false)
   if (config.trustProxy !== null) app.set('trust proxy', config.trustProxy)
-  app.use(requestId, ...headers(config.isSecure))
+  app.use(requestId, ...headers(config.isSecure), compression())
   const isUp = async (): Promise<boolean> =>
     db.raw('select 1').then(
       () => true,
@@ -170,16 +175,16 @@ export const buildApp = async ({ config, log, now, limitScale = 1 }: AppDeps) =>
   })
 
   const api = express.Router()
-  api.use(limits.general, sameOrigin, ...signIn.middleware)
+  api.use(rates.general, sameOrigin, ...signIn.middleware)
   const serve = mount({
     relations,
-    receive: createReceiver(await storage.incomingFolder()),
+    receive: createReceiver(await storage.incomingFolder(), bounds.uploadBytes),
     signIn,
     denied: (actor, _def, asker) => accounts.denied(actor, asker)
   })
-  serve(api, accountRoutes, accountHandlers({ accounts, limits }))
+  serve(api, accountRoutes, accountHandlers({ accounts, limits: rates }))
   serve(api, groupRoutes, groupHandlers(groups))
-  serve(api, invitationRoutes, invitationHandlers(invitations, limits))
+  serve(api, invitationRoutes, invitationHandlers(invitations, rates))
   serve(api, linkRoutes, linkHandlers(links))
   serve(api, groupEventRoutes, groupEventHandlers(groupEvents))
   serve(api, tuneRoutes, tuneHandlers(tunes))

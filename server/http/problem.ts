@@ -4,6 +4,7 @@ import multer from 'multer'
 import type { z } from 'zod'
 import { Problem, type ProblemField, problem } from '@shared/errors/problems'
 import type { Logger } from '@server/logger'
+import { StorageFull } from '@server/media/faults'
 
 export const sendProblem = (res: Response, fault: Problem): void => {
   res
@@ -38,13 +39,18 @@ export const problemOf = (error: unknown): Problem | null => {
     http?.type === 'charset.unsupported'
   )
     return problem('bad-request')
-  if (http?.code === 'ENOSPC' || http?.code === 'EDQUOT') return problem('storage-full')
+  if (error instanceof StorageFull || http?.code === 'ENOSPC' || http?.code === 'EDQUOT') return problem('storage-full')
   if (error instanceof URIError) return problem('bad-request')
   if (http?.status === 400) return problem('bad-request')
+  if (http?.status === 412) return problem('precondition-failed')
   const code = postgresCode(error)
+  // Values that no column takes, where a contract let them through.
+  if (/^22/.test(code)) return problem('bad-request')
+  // What was pointed at was deleted in the same moment.
+  if (code === '23503') return problem('not-found')
   if (code === '23505') return problem('already-there')
   // Connection trouble, restart, too many clients: the same request may work in a moment.
-  if (/^(08|57P0|53)/.test(code) || code === 'ECONNREFUSED' || code === 'ECONNRESET') return problem('unavailable')
+  if (/^(08|57P0|53|40P01|40001)/.test(code) || code === 'ECONNREFUSED' || code === 'ECONNRESET') return problem('unavailable')
   if (
     /Timeout acquiring a connection|Connection terminated|Client has encountered/.test(
       String((error as Error)?.message)
