@@ -255,7 +255,7 @@ export const createMediaElementPlayer = (deps: MediaElementDeps = {}): Player =>
     clock: now,
     positionAt: (at) => {
       const position = heard()
-      const elapsed = isSounding() ? (at - now()) * rate : 0
+      const elapsed = isSounding() ? (at - now()) * rate * trim : 0
       return Math.max(0, Math.min(durationSec(), wrapInLoop(loop?.span ?? null, position, elapsed)))
     },
     load: (next) => {
