@@ -1,5 +1,5 @@
 import { useRef } from 'react'
-import type { KeyboardEvent } from 'react'
+import type { KeyboardEvent, ReactNode } from 'react'
 import { Button } from './button'
 import { cx } from './classes'
 import { Icon } from './icon'
@@ -23,13 +23,15 @@ export interface MenuProps {
   items: readonly MenuItem[]
   /** Icon only; without it the label stands on the button. */
   icon?: IconName
+  /** Stands on the button in place of the label, which then only names it. */
+  face?: ReactNode
   align?: 'start' | 'end'
 }
 
 const itemsIn = (menu: HTMLElement) => [...menu.querySelectorAll<HTMLElement>('[role="menuitem"]')]
 
 /** APG menu button: arrows, Home, End and first letters move; Enter or Space chooses; Esc goes back to the button. */
-export function Menu({ label, items, icon, align = 'end' }: MenuProps) {
+export function Menu({ label, items, icon, face, align = 'end' }: MenuProps) {
   const startAt = useRef<'first' | 'last'>('first')
 
   function handleMenuKey(event: KeyboardEvent<HTMLElement>, menu: HTMLElement) {
@@ -79,8 +81,12 @@ export function Menu({ label, items, icon, align = 'end' }: MenuProps) {
             props.onClick()
           }
         }
-        return icon ? (
-          <IconButton {...shared} icon={icon} label={label} />
+        if (icon) return <IconButton {...shared} icon={icon} label={label} />
+        return face ? (
+          <Button {...shared} look="quiet" aria-label={label} title={label}>
+            {face}
+            <Icon name="chevronDown" size={16} />
+          </Button>
         ) : (
           <Button {...shared}>
             {label}

@@ -1,10 +1,51 @@
+import { Link, useParams } from 'react-router-dom'
+import type { Group } from '@shared/contracts/groups'
+import { AccountMenu } from '@client/features/account/account-menu'
+import { GroupGate } from '@client/features/groups/group-gate'
+import { LiveSessions } from '@client/features/groups/live-sessions'
+import { TakeList } from '@client/features/groups/take-list'
+import { TuneList } from '@client/features/groups/tune-list'
+import { UnheardTakes } from '@client/features/groups/unheard-takes'
+import { useGroup } from '@client/features/groups/api'
+import { useGroupNews } from '@client/features/groups/use-group-news'
+import { paths } from '@client/lib/paths'
 import { AppShell } from '@client/ui/app-shell'
+import { buttonClass } from '@client/ui/button'
 import { Page } from '@client/ui/page'
 
 export function GroupRoute() {
+  const { groupId = '' } = useParams()
+  const { data: group } = useGroup(groupId)
+  useGroupNews(groupId)
   return (
-    <AppShell>
-      <Page title="group">{null}</Page>
+    <AppShell crumbs={group ? [{ label: group.name }] : []} right={<AccountMenu />}>
+      <GroupGate groupId={groupId}>{(known) => <GroupPage key={known.id} group={known} />}</GroupGate>
     </AppShell>
+  )
+}
+
+function GroupPage({ group }: { group: Group }) {
+  const canAdd = group.abilities.includes('group:add-take')
+  return (
+    <Page
+      title={group.name}
+      actions={
+        <Link to={paths.people(group.id)} className={buttonClass()}>
+          People
+        </Link>
+      }
+    >
+      <LiveSessions groupId={group.id} />
+      <TakeList
+        groupId={group.id}
+        how={
+          canAdd
+            ? 'Drop a recording on the first screen and keep it here.'
+            : 'Somebody has to share one with you or with the group.'
+        }
+      />
+      <TuneList groupId={group.id} />
+      <UnheardTakes groupId={group.id} />
+    </Page>
   )
 }
