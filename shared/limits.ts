@@ -16,6 +16,8 @@ export const limits = {
   /** Takes a member may have in one group, and the bytes of their originals together. */
   takesPerMember: 2000,
   bytesPerMember: 40 * 1024 ** 3,
+  /** Recordings being made in the browser at one time by one person. */
+  openRecordings: 20,
   takeNames: 100,
   commentsPerTake: 5000,
   jsonBytes: 512 * 1024,
@@ -24,3 +26,4 @@ export const limits = {
   invitationDays: 14,
   pageSize: 100
 } as const
+export type Bounds = { [K in keyof typeof limits]: number }

@@ -57,7 +57,7 @@ export const createRelations = (repo: AccessRepo) => {
     },
     recording: async (userId, id) => {
       const row = await repo.recording(id)
-      return row?.uploader_id === userId ? stranger().add('author') : stranger()
+      return row?.uploader_id === userId ? within(group(userId, row.group_id), true) : stranger()
     }
   }
 

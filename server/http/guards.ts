@@ -68,10 +68,10 @@ export const sameOrigin: RequestHandler = (req, _res, next) => {
 export interface RateLimits {
   /** Every request of one address. */
   general: RequestHandler
-  /** Tries to sign in: by account and address, and by address alone. Throws `too-many`. */
+  /** Tries to sign in: by account and address, and by address alone. Every try counts when it begins, so that many at
+      once are no way round. Throws `too-many`. */
   signIn: {
     before(email: string, address: string): Promise<void>
-    failed(email: string, address: string): Promise<void>
     passed(email: string, address: string): Promise<void>
   }
   /** Opening accounts and trying invitation links, by address. */
@@ -91,7 +91,7 @@ const refuse = (error: unknown): never => {
 export const createRateLimits = (scale = 1): RateLimits => {
   const perAddress = new RateLimiterMemory({ points: 1500 * scale, duration: 60 })
   const perAccount = new RateLimiterMemory({ points: 8, duration: 15 * 60, blockDuration: 15 * 60 })
-  const failuresOfAddress = new RateLimiterMemory({ points: 60 * scale, duration: 15 * 60 })
+  const triesOfAddress = new RateLimiterMemory({ points: 60 * scale, duration: 15 * 60 })
   const opening = new RateLimiterMemory({ points: 30 * scale, duration: 15 * 60 })
   const account = (email: string, address: string) => `${email.trim().toLowerCase()} ${address}`
   return {
@@ -110,15 +110,11 @@ export const createRateLimits = (scale = 1): RateLimits => {
     signIn: {
       // Account and address together, so that nobody can lock another person out (ASVS V6.3.1).
       before: async (email, address) => {
-        const [one, all] = await Promise.all([perAccount.get(account(email, address)), failuresOfAddress.get(address)])
-        if (one && one.consumedPoints >= 8) refuse(one)
-        if (all && all.consumedPoints >= 60 * scale) refuse(all)
-      },
-      failed: async (email, address) => {
-        await Promise.allSettled([perAccount.consume(account(email, address)), failuresOfAddress.consume(address)])
+        await perAccount.consume(account(email, address)).catch(refuse)
+        await triesOfAddress.consume(address).catch(refuse)
       },
       passed: async (email, address) => {
-        await perAccount.delete(account(email, address))
+        await Promise.all([perAccount.delete(account(email, address)), triesOfAddress.reward(address)])
       }
     },
     open: async (address) => {

@@ -2,12 +2,11 @@
 import express, { type IRouter, type Request, type RequestHandler, type Response } from 'express'
 import { denial } from '@shared/access/permissions'
 import type { RouteDef } from '@shared/contracts/route'
-import { problem, type ProblemField } from '@shared/errors/problems'
+import { problem } from '@shared/errors/problems'
 import { limits } from '@shared/limits'
-import type { z } from 'zod'
 import type { Relations } from '@server/access/relations'
 import type { Actor, Asker, FileAnswer, Handlers, UploadedFile } from '@server/http/handlers'
-import { fieldsOf } from '@server/http/problem'
+import { parseInput } from '@server/http/parse'
 import { sendFileAnswer } from '@server/http/send-file'
 import type { SignIn } from '@server/http/sign-in'
 import type { Receiver } from '@server/http/receive-upload'
@@ -20,12 +19,6 @@ export interface MountDeps {
   denied(actor: Actor, def: RouteDef, asker: Asker): Promise<void>
 }
 
-const parse = <S extends z.ZodType>(where: ProblemField['in'], schema: S, value: unknown): z.infer<S> => {
-  const parsed = schema.safeParse(value)
-  if (!parsed.success) throw problem('invalid', { errors: fieldsOf(where, parsed.error) })
-  return parsed.data
-}
-
 const parseJson = express.json({ limit: limits.jsonBytes, strict: true })
 const run = (handler: RequestHandler, req: Request, res: Response): Promise<void> =>
   new Promise((done, fail) => {
@@ -34,14 +27,15 @@ const run = (handler: RequestHandler, req: Request, res: Response): Promise<void
 
 async function* bytesOf(req: Request, max: number): AsyncIterable<Buffer> {
   let seen = 0
-  for await (const chunk of req) {
+  // Left in the middle, the request must stay open for the answer.
+  for await (const chunk of req.iterator({ destroyOnReturn: false })) {
     seen += (chunk as Buffer).length
     if (seen > max) throw problem('too-large')
     yield chunk as Buffer
   }
 }
 
-/** Mounts every route of `defs` with its handler. Registers the definition on the layer so that a test can walk them. */
+/** Mounts every route of `defs` with its handler. */
 export const mount =
   ({ relations, receive, signIn, denied }: MountDeps) =>
   <R extends Record<string, RouteDef>>(router: IRouter, defs: R, handlers: Handlers<R>): void => {
@@ -64,13 +58,13 @@ export const mount =
         const params = def.params.safeParse(req.params)
         if (!params.success || refused === 404) throw problem('not-found')
         if (refused === 403) throw problem('forbidden')
-        const query = parse('query', def.query, req.query)
+        const query = parseInput('query', def.query, req.query)
         const input = { actor, relations: held, params: params.data, query, asker, signIn: signIn.control(req) }
         if (def.kind === 'upload') {
           const upload = await receive(req, res, def)
           let answered = false
           try {
-            const body = parse('body', def.body, upload.fields)
+            const body = parseInput('body', def.body, upload.fields)
             const answer = await handler({ ...input, body, file: upload.file satisfies UploadedFile })
             answered = true
             res.status(def.status).set('Cache-Control', 'no-store').json(def.response.parse(answer))
@@ -90,7 +84,7 @@ export const mount =
           return
         }
         if (def.method !== 'GET') await run(parseJson, req, res)
-        const body = def.method === 'GET' ? {} : parse('body', def.body, req.body ?? {})
+        const body = def.method === 'GET' ? {} : parseInput('body', def.body, req.body ?? {})
         const answer = await handler({ ...input, body })
         res
           .status(def.status)

@@ -19,17 +19,17 @@ export const servePage = (router: Router, buildDir: string): void => {
     }
   }
   // Names under assets/ carry a hash of their content.
-  router.use(
-    express.static(buildDir, {
-      index: false,
-      setHeaders: (res, path) => {
-        res.set(
-          'Cache-Control',
-          path.includes('/assets/') ? `public, max-age=${yearSec}, immutable` : 'public, max-age=3600'
-        )
-      }
-    })
-  )
+  const files = express.static(buildDir, {
+    index: false,
+    setHeaders: (res, path) => {
+      res.set(
+        'Cache-Control',
+        path.includes('/assets/') ? `public, max-age=${yearSec}, immutable` : 'public, max-age=3600'
+      )
+    }
+  })
+  // The page itself is never sent as it lies there: it needs its nonce.
+  router.use((req, res, next) => (/^\/index\.html$/i.test(req.path) ? next() : files(req, res, next)))
   router.get('/{*path}', (req, res) => {
     if (req.path.startsWith('/api/') || req.path.startsWith('/assets/') || !req.accepts('html'))
       throw problem('not-found')

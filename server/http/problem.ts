@@ -45,12 +45,13 @@ export const problemOf = (error: unknown): Problem | null => {
   if (http?.status === 412) return problem('precondition-failed')
   const code = postgresCode(error)
   // Values that no column takes, where a contract let them through.
-  if (/^22/.test(code)) return problem('bad-request')
+  if (code.startsWith('22')) return problem('bad-request')
   // What was pointed at was deleted in the same moment.
   if (code === '23503') return problem('not-found')
   if (code === '23505') return problem('already-there')
   // Connection trouble, restart, too many clients: the same request may work in a moment.
-  if (/^(08|57P0|53|40P01|40001)/.test(code) || code === 'ECONNREFUSED' || code === 'ECONNRESET') return problem('unavailable')
+  if (/^(08|57P0|53|40P01|40001)/.test(code) || code === 'ECONNREFUSED' || code === 'ECONNRESET')
+    return problem('unavailable')
   if (
     /Timeout acquiring a connection|Connection terminated|Client has encountered/.test(
       String((error as Error)?.message)

@@ -18,7 +18,7 @@ export interface Received {
 export type Receiver = (req: Request, res: Response, def: RouteDef) => Promise<Received>
 
 export const createReceiver =
-  (incomingDir: string): Receiver =>
+  (incomingDir: string, maxBytes: number): Receiver =>
   async (req, res, def) => {
     const folder = join(incomingDir, randomUUID())
     await mkdir(folder, { recursive: true })
@@ -29,7 +29,7 @@ export const createReceiver =
           destination: folder,
           filename: (_req, _file, named) => named(null, 'recording')
         }),
-        limits: { fileSize: def.maxBytes ?? 0, files: 1, fields: 20, fieldSize: 10_000, parts: 30 }
+        limits: { fileSize: Math.min(def.maxBytes ?? 0, maxBytes), files: 1, fields: 20, fieldSize: 10_000, parts: 30 }
       }).single(def.fileField ?? 'file')
       await new Promise<void>((done, fail) => {
         // A person who cancels leaves a half-sent body: multer then never calls back.

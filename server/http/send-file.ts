@@ -22,13 +22,9 @@ export const sendFileAnswer = (req: Request, res: Response, answer: FileAnswer):
       // The listener went away in the middle: nobody is left to tell.
       if (!error || res.headersSent || req.destroyed) return done()
       const status = (error as { status?: number }).status
-      if (status === 416) {
-        res
-          .status(416)
-          .set('Content-Range', res.get('Content-Range') ?? '*')
-          .end()
-        return done()
-      }
+      res.removeHeader('Content-Disposition')
+      // `send` has put the length into Content-Range by now (RFC 9110, 15.5.17).
+      if (status === 416) return fail(problem('range-unsatisfiable'))
       fail(status === 404 || (error as NodeJS.ErrnoException).code === 'ENOENT' ? problem('not-found') : error)
     })
   })

@@ -33,8 +33,9 @@ export const createIngestJob = ({ db, databaseUrl, takes, events, storage, log, 
     db.transaction(async (trx) => {
       const home = await takes.home(takeId, trx)
       if (!home) return
-      await work(trx)
+      // The event first: it locks the group, as every write does before it touches rows inside.
       await events.add({ groupId: home.groupId, type: 'take:updated', objectId: takeId, takeId }, trx)
+      await work(trx)
     })
 
   const fail = (takeId: string, sentence: string): Promise<void> =>

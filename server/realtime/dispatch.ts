@@ -2,7 +2,7 @@
 import type { GroupEvent } from '@shared/contracts/group-events'
 import type { Logger } from '@server/logger'
 import type { Rooms } from '@server/realtime/rooms'
-import { groupRoom } from '@server/realtime/rooms'
+import { groupRoom, watchRoom } from '@server/realtime/rooms'
 import type { GroupEventService } from '@server/services/group-events.service'
 
 interface Deps {
@@ -35,7 +35,7 @@ export const createDispatch = ({ rooms, events, log, beforeSend }: Deps) => {
         }
       }
       sent.set(groupId, last.seq)
-      if (sockets.length === 0) sent.delete(groupId)
+      if (sockets.length === 0 && rooms.socketsIn(watchRoom(groupId)).length === 0) sent.delete(groupId)
     }
   }
   /** One at a time for a group; a wake-up during a run makes it look once more. */

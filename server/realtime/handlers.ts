@@ -3,7 +3,7 @@ import type { Session } from '@shared/contracts/sessions'
 import type { Actor } from '@server/http/handlers'
 import type { Dispatch } from '@server/realtime/dispatch'
 import type { Presence } from '@server/realtime/presence'
-import { groupRoom, sessionRoom } from '@server/realtime/rooms'
+import { groupRoom, sessionRoom, watchRoom } from '@server/realtime/rooms'
 import type { EventHandlers, Io } from '@server/realtime/socket'
 import type { SessionService } from '@server/services/sessions.service'
 
@@ -34,7 +34,8 @@ export const createEventHandlers = ({ io, sessions, dispatch, presence, now }: D
     'clock:ask': async () => ({ serverMs: now() }),
     'session:join': async ({ socket, actor, relations, payload }) => {
       const session = await sessions.join(actor, relations, payload.sessionId)
-      await socket.join(sessionRoom(session.id))
+      await socket.join([sessionRoom(session.id), watchRoom(session.groupId)])
+      await dispatch.follow(session.groupId)
       presence.touch(session.id, actor.id)
       tellState(session)
       return session

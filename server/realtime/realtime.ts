@@ -17,7 +17,7 @@ import { createDispatch } from '@server/realtime/dispatch'
 import { createEventHandlers } from '@server/realtime/handlers'
 import { createListener } from '@server/realtime/listener'
 import { createPresence } from '@server/realtime/presence'
-import { createRooms, groupRoom, sessionRoom } from '@server/realtime/rooms'
+import { createRooms, groupRoom, sessionRoom, watchRoom } from '@server/realtime/rooms'
 import { attach, createIo, type RoomSocket } from '@server/realtime/socket'
 import type { GroupEventService } from '@server/services/group-events.service'
 import type { SessionService } from '@server/services/sessions.service'
@@ -71,10 +71,16 @@ export const startRealtime = async (deps: Deps) => {
   })
 
   const rooms = createRooms(io, relations)
+  /** Nothing where the session went with its take. */
+  const tellState = async (sessionId: string): Promise<void> => {
+    const session = await sessions.find(sessionId)
+    if (!session) return
+    const { abilities: _, ...state } = session
+    io.to(sessionRoom(sessionId)).emit('session:state', state)
+  }
   const leaveFor = async (sessionId: string, userId: string): Promise<void> => {
     await sessions.leave({ id: userId, name: '', isOperator: false }, sessionId)
-    const { abilities: _, ...state } = await sessions.get(sessionId, new Set())
-    io.to(sessionRoom(sessionId)).emit('session:state', state)
+    await tellState(sessionId)
   }
   const presence = createPresence({ rooms, now, log, leave: leaveFor })
 
@@ -91,12 +97,9 @@ export const startRealtime = async (deps: Deps) => {
     if ((event.type === 'person:left' || event.type === 'person:updated') && event.objectId)
       await recheck(rooms.socketsOf(event.objectId))
     if (event.type === 'take:updated' || event.type === 'take:removed' || event.type === 'link:changed') {
-      await recheck(rooms.socketsIn(groupRoom(event.groupId)).filter((socket) => rooms.sessionsOf(socket).length > 0))
+      await recheck(rooms.socketsIn(watchRoom(event.groupId)))
     }
-    if (event.type === 'session:ended' && event.objectId) {
-      const { abilities: _, ...state } = await sessions.get(event.objectId, new Set())
-      io.to(sessionRoom(event.objectId)).emit('session:state', state)
-    }
+    if (event.type === 'session:ended' && event.objectId) await tellState(event.objectId)
   }
   const dispatch = createDispatch({ rooms, events: groupEvents, log, beforeSend })
 

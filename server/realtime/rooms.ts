@@ -4,6 +4,8 @@ import type { Relations } from '@server/access/relations'
 import type { Io, RoomSocket } from '@server/realtime/socket'
 
 export const groupRoom = (groupId: string): string => `group:${groupId}`
+/** Sockets in a session of the group: events are looked at for their sake too, whether they follow the group or not. */
+export const watchRoom = (groupId: string): string => `watch:${groupId}`
 export const sessionRoom = (sessionId: string): string => `session:${sessionId}`
 const idOf = (room: string, prefix: string): string | null =>
   room.startsWith(prefix) ? room.slice(prefix.length) : null
@@ -19,9 +21,11 @@ export const createRooms = (io: Io, relations: Relations) => {
     socketsIn,
     socketsOf: (userId: string): RoomSocket[] =>
       [...io.sockets.sockets.values()].filter((socket) => socket.data.actor.id === userId),
-    followedGroups: (): string[] => [...io.sockets.adapter.rooms.keys()].flatMap((room) => idOf(room, 'group:') ?? []),
-    openSessions: (): string[] => [...io.sockets.adapter.rooms.keys()].flatMap((room) => idOf(room, 'session:') ?? []),
-    sessionsOf: (socket: RoomSocket): string[] => [...socket.rooms].flatMap((room) => idOf(room, 'session:') ?? []),
+    followedGroups: (): string[] => [
+      ...new Set(
+        [...io.sockets.adapter.rooms.keys()].flatMap((room) => idOf(room, 'group:') ?? idOf(room, 'watch:') ?? [])
+      )
+    ],
     /** Takes a socket out of every room whose right it has lost. Returns the sessions it was taken out of. */
     evict: async (socket: RoomSocket): Promise<string[]> => {
       const left: string[] = []

@@ -15,7 +15,8 @@ import { problem } from '@shared/errors/problems'
 import type { Relations } from '@server/access/relations'
 import { isOwnOrigin } from '@server/http/guards'
 import type { Actor } from '@server/http/handlers'
-import { fieldsOf, problemOf } from '@server/http/problem'
+import { parseInput } from '@server/http/parse'
+import { problemOf } from '@server/http/problem'
 import type { Logger } from '@server/logger'
 
 export interface SocketData {
@@ -94,7 +95,7 @@ export const attach = (
     }
     const name = String(packet[0])
     const ack = packet.at(-1) as unknown
-    if (!(name in clientEvents)) {
+    if (!Object.hasOwn(clientEvents, name)) {
       if (typeof ack === 'function')
         (ack as (answer: Ack<never>) => void)({ ok: false, problem: problem('not-found').toBody() })
       return
@@ -112,15 +113,16 @@ export const attach = (
         socket.disconnect(true)
         throw problem('sign-in-needed')
       }
-      const parsed = def.payload.safeParse(payload)
-      if (!parsed.success) throw problem('invalid', { errors: fieldsOf('body', parsed.error) })
+      const parsed = parseInput('body', def.payload, payload)
       const { actor } = socket.data
-      const held = await relations.of(actor, def.access, parsed.data as Record<string, unknown>)
+      const held = await relations.of(actor, def.access, parsed as Record<string, unknown>)
       const refused = denial(def.access, held)
       if (refused) throw problem(refused === 403 ? 'forbidden' : refused === 401 ? 'sign-in-needed' : 'not-found')
-      return def.reply.parse(await handler({ socket, actor, relations: held, payload: parsed.data as never }))
+      return def.reply.parse(await handler({ socket, actor, relations: held, payload: parsed as never }))
     }
-    const listener = (payload: unknown, ack: unknown): void => {
+    const listener = (...sent: unknown[]): void => {
+      const ack = sent.at(-1)
+      const payload = typeof sent[0] === 'function' ? undefined : sent[0]
       const respond = typeof ack === 'function' ? (ack as (a: Ack<unknown>) => void) : () => undefined
       answer(payload).then(
         (data) => respond({ ok: true, data }),

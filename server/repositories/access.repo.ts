@@ -43,20 +43,21 @@ const toStanding = (row: TakeStandingRow): TakeStanding => ({
 })
 
 export const createAccessRepo = (db: Db) => ({
-  roleIn: async (userId: string, groupId: string): Promise<Role | null> => {
-    const row = await db('memberships').where({ group_id: groupId, user_id: userId }).first('role')
+  roleIn: async (userId: string, groupId: string, trx: Db = db): Promise<Role | null> => {
+    const row = await trx('memberships').where({ group_id: groupId, user_id: userId }).first('role')
     return row?.role ?? null
   },
-  /** Holds a membership as it is until the transaction ends (shared: people's own writes do not wait for each other). */
-  lockMembership: async (userId: string, groupId: string): Promise<void> => {
-    await db('memberships').where({ group_id: groupId, user_id: userId }).forShare().first('role')
+  /** The group's row, locked until the transaction ends. Every write takes it first, before any other row of the group:
+      then nobody waits in a circle, and nobody's rights change under a write. */
+  lockGroup: async (groupId: string): Promise<void> => {
+    await db('groups').where({ id: groupId }).forNoKeyUpdate().first('id')
   },
   groupExists: async (groupId: string): Promise<boolean> =>
     Boolean(await db('groups').where({ id: groupId }).first('id')),
   tune: (tuneId: string) => db('tunes').where({ id: tuneId }).first('group_id', 'created_by'),
   invitation: (id: string) => db('invitations').where({ id }).first('group_id', 'created_by'),
   link: (id: string) => db('teacher_links').where({ id }).first('group_id', 'teacher_id', 'student_id'),
-  recording: (id: string) => db('recordings').where({ id }).first('uploader_id'),
+  recording: (id: string) => db('recordings').where({ id }).first('group_id', 'uploader_id'),
   comment: (id: string) => db('comments').where({ id }).first('take_id', 'author_id'),
   reply: (id: string) =>
     db('replies')

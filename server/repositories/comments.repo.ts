@@ -149,9 +149,6 @@ export const createCommentsRepo = (db: Db) => {
     },
     /** True when it was there. */
     remove: async (id: string, trx: Db): Promise<boolean> => (await trx('comments').where({ id }).delete()) > 0,
-    /** Locks the comment so that an answer and a deletion cannot pass each other. */
-    lock: async (id: string, trx: Db): Promise<boolean> =>
-      Boolean(await trx('comments').where({ id }).forUpdate().first('id')),
     insertReply: async (
       row: { id: string; commentId: string; authorId: string; text: string },
       trx: Db

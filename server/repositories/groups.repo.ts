@@ -55,10 +55,6 @@ export const createGroupsRepo = (db: Db) => ({
         updated_at: trx.fn.now()
       })
   },
-  /** The group's row, locked: changes of owners wait for each other here. */
-  lock: async (id: string, trx: Db): Promise<void> => {
-    await trx('groups').where({ id }).forUpdate().first('id')
-  },
   members: async (groupId: string, trx: Db = db): Promise<StoredMember[]> => {
     const rows = await trx('memberships')
       .join('users', 'users.id', 'memberships.user_id')

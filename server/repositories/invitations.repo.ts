@@ -62,8 +62,8 @@ export const createInvitationsRepo = (db: Db) => ({
       expires_at: row.expiresAt
     })
   },
-  byToken: async (tokenHash: Buffer, now: Date): Promise<InvitationByToken | null> => {
-    const row = await db('invitations')
+  byToken: async (tokenHash: Buffer, now: Date, trx: Db = db): Promise<InvitationByToken | null> => {
+    const row = await trx('invitations')
       .join('groups', 'groups.id', 'invitations.group_id')
       .join('users', 'users.id', 'invitations.created_by')
       .where('invitations.token_hash', tokenHash)
@@ -103,13 +103,10 @@ export const createInvitationsRepo = (db: Db) => ({
       .returning(['id', 'group_id', 'role'])
     return row ? { id: row.id, groupId: row.group_id, role: row.role } : null
   },
-  revoke: async (id: string, now: Date, trx: Db): Promise<string | null> => {
-    const [row] = await trx('invitations')
-      .where({ id })
-      .whereNull('used_at')
-      .update({ revoked_at: now })
-      .returning('group_id')
-    return row?.group_id ?? null
-  }
+  groupOf: async (id: string, trx: Db): Promise<string | null> =>
+    (await trx('invitations').where({ id }).first('group_id'))?.group_id ?? null,
+  /** False when it was used already. */
+  revoke: async (id: string, now: Date, trx: Db): Promise<boolean> =>
+    (await trx('invitations').where({ id }).whereNull('used_at').update({ revoked_at: now })) > 0
 })
 export type InvitationsRepo = ReturnType<typeof createInvitationsRepo>

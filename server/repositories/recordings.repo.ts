@@ -28,6 +28,14 @@ export const createRecordingsRepo = (db: Db) => ({
   insert: async (row: { id: string; groupId: string; uploaderId: string; mime: string }, trx: Db): Promise<void> => {
     await trx('recordings').insert({ id: row.id, group_id: row.groupId, uploader_id: row.uploaderId, mime: row.mime })
   },
+  /** How many a person has begun and neither kept nor dropped. */
+  openCount: async (uploaderId: string, trx: Db): Promise<number> => {
+    const [row] = await trx('recordings')
+      .where({ uploader_id: uploaderId })
+      .whereNull('take_id')
+      .count<{ count: number }[]>('id as count')
+    return row?.count ?? 0
+  },
   /** Counts a piece that is safe on disk; only the one that was awaited counts. */
   countPiece: async (id: string, index: number, bytes: number): Promise<void> => {
     await db('recordings')

@@ -22,7 +22,6 @@ export const accountHandlers = ({ accounts, limits }: Deps): Handlers<typeof acc
     await limits.signIn.before(body.email, asker.address)
     const actor = await signIn.check(body.email, body.password)
     if (!actor) {
-      await limits.signIn.failed(body.email, asker.address)
       await accounts.signedIn(null, false, asker)
       throw problem('sign-in-failed')
     }

@@ -43,7 +43,7 @@ const withAbilities = (comment: StoredComment, actor: Actor, held: Held): Commen
 }
 
 export const createCommentService = ({ db, comments, takes, events }: Deps) => {
-  /** One change of one comment: rights checked again, the comment locked, the group told. */
+  /** One change of one comment: rights checked again with the group locked, the group told. */
   const change = async (
     actor: Actor,
     held: Held,
@@ -52,18 +52,29 @@ export const createCommentService = ({ db, comments, takes, events }: Deps) => {
     work: (comment: StoredComment, trx: Db) => Promise<void>
   ): Promise<Comment> =>
     db.transaction(async (trx) => {
-      if (!(await comments.lock(id.commentId, trx))) throw problem('not-found')
-      const before = await comments.find(id.commentId, trx)
-      if (!before) throw problem('not-found')
-      await tell('comment:updated', before.takeId, before.id, actor, trx, (groupId) =>
+      const { takeId } = await found(id.commentId, trx)
+      await tell('comment:updated', takeId, id.commentId, actor, trx, (groupId) =>
         stillAllowed(actor, permission, id, groupId, trx)
       )
-      await work(before, trx)
+      await work(await found(id.commentId, trx), trx)
       const after = await comments.find(id.commentId, trx)
       if (!after) throw problem('not-found')
       return withAbilities(after, actor, held)
     })
 
+  const found = async (commentId: string, trx: Db): Promise<StoredComment> => {
+    const comment = await comments.find(commentId, trx)
+    if (!comment) throw problem('not-found')
+    return comment
+  }
+
+  /** The group around a take, locked and checked: first of all in a transaction, before any row is touched. */
+  const lockAround = async (takeId: string, trx: Db, check: (groupId: string) => Promise<void>): Promise<string> => {
+    const home = await takes.home(takeId, trx)
+    if (!home) throw problem('not-found')
+    await check(home.groupId)
+    return home.groupId
+  }
   const tell = async (
     type: GroupEventType,
     takeId: string,
@@ -72,10 +83,8 @@ export const createCommentService = ({ db, comments, takes, events }: Deps) => {
     trx: Db,
     check: (groupId: string) => Promise<void>
   ): Promise<void> => {
-    const home = await takes.home(takeId, trx)
-    if (!home) throw problem('not-found')
-    await check(home.groupId)
-    await events.add({ groupId: home.groupId, type, objectId, takeId, actorId: actor.id }, trx)
+    const groupId = await lockAround(takeId, trx, check)
+    await events.add({ groupId, type, objectId, takeId, actorId: actor.id }, trx)
   }
 
   const within = async (takeId: string, span: Span, trx: Db): Promise<void> => {
@@ -98,6 +107,9 @@ export const createCommentService = ({ db, comments, takes, events }: Deps) => {
       input: { id: string; kind: CommentKind; text: string } & Span
     ): Promise<Comment> =>
       db.transaction(async (trx) => {
+        const groupId = await lockAround(takeId, trx, (group) =>
+          stillAllowed(actor, 'take:comment', { takeId }, group, trx)
+        )
         const before = await comments.find(input.id, trx)
         if (before) {
           // Sent again after a lost answer.
@@ -105,9 +117,7 @@ export const createCommentService = ({ db, comments, takes, events }: Deps) => {
           return withAbilities(before, actor, held)
         }
         await within(takeId, input, trx)
-        await tell('comment:created', takeId, input.id, actor, trx, (groupId) =>
-          stillAllowed(actor, 'take:comment', { takeId }, groupId, trx)
-        )
+        await events.add({ groupId, type: 'comment:created', objectId: input.id, takeId, actorId: actor.id }, trx)
         if ((await comments.count(takeId, trx)) >= limits.commentsPerTake) throw problem('over-quota')
         await comments.insert({ ...input, takeId, authorId: actor.id }, trx)
         const after = await comments.find(input.id, trx)
@@ -135,12 +145,11 @@ export const createCommentService = ({ db, comments, takes, events }: Deps) => {
 
     remove: (actor: Actor, commentId: string): Promise<void> =>
       db.transaction(async (trx) => {
-        const before = (await comments.lock(commentId, trx)) ? await comments.find(commentId, trx) : null
-        if (!before) throw problem('not-found')
-        await tell('comment:removed', before.takeId, commentId, actor, trx, (groupId) =>
+        const { takeId } = await found(commentId, trx)
+        await tell('comment:removed', takeId, commentId, actor, trx, (groupId) =>
           stillAllowed(actor, 'comment:delete', { commentId }, groupId, trx)
         )
-        await comments.remove(commentId, trx)
+        if (!(await comments.remove(commentId, trx))) throw problem('not-found')
       }),
 
     reply: (actor: Actor, held: Held, commentId: string, input: { id: string; text: string }): Promise<Comment> =>

@@ -8,6 +8,7 @@ import type { Actor, Asker } from '@server/http/handlers'
 import type { AuditRepo } from '@server/repositories/audit.repo'
 import type { EventsRepo } from '@server/repositories/events.repo'
 import type { GroupsRepo, StoredGroup } from '@server/repositories/groups.repo'
+import { stillAllowed } from '@server/services/still-allowed'
 
 interface Deps {
   db: Db
@@ -35,7 +36,7 @@ export const createGroupService = ({ db, groups, events, audit }: Deps) => {
     await events.add({ groupId: input.id, type: 'person:joined', objectId: actor.id, actorId: actor.id }, trx)
   }
 
-  /** Refuses what would leave a group without an owner. Call with the group locked. */
+  /** Refuses what would leave a group without an owner. Call with the group locked (stillAllowed does). */
   const keepAnOwner = async (groupId: string, userId: string, trx: Db): Promise<void> => {
     const owners = await groups.owners(groupId, trx)
     if (owners.length === 1 && owners[0] === userId) {
@@ -43,9 +44,15 @@ export const createGroupService = ({ db, groups, events, audit }: Deps) => {
     }
   }
 
-  const takeOut = (actor: Actor, groupId: string, userId: string, asker: Asker): Promise<void> =>
+  const takeOut = (
+    actor: Actor,
+    permission: 'group:leave' | 'group:set-role',
+    groupId: string,
+    userId: string,
+    asker: Asker
+  ): Promise<void> =>
     db.transaction(async (trx) => {
-      await groups.lock(groupId, trx)
+      await stillAllowed(actor, permission, { groupId }, groupId, trx)
       await keepAnOwner(groupId, userId, trx)
       if (!(await groups.removeMember(groupId, userId, trx))) throw problem('not-found')
       await events.add({ groupId, type: 'person:left', objectId: userId, actorId: actor.id }, trx)
@@ -69,6 +76,9 @@ export const createGroupService = ({ db, groups, events, audit }: Deps) => {
       items: (await groups.ofPerson(actor.id)).map((group) => toGroup(group, group.role))
     }),
     create: async (actor: Actor, input: { id: string; name: string }): Promise<Group> => {
+      const mine = (await groups.ofPerson(actor.id)).find((group) => group.id === input.id)
+      // Sent again after a lost answer.
+      if (mine?.role === 'owner') return toGroup(mine, mine.role)
       await db.transaction((trx) => createFor(actor, input, trx))
       return get(actor, input.id)
     },
@@ -78,12 +88,13 @@ export const createGroupService = ({ db, groups, events, audit }: Deps) => {
       change: { name?: string | undefined; isRosterShown?: boolean | undefined }
     ): Promise<Group> => {
       await db.transaction(async (trx) => {
+        await stillAllowed(actor, 'group:edit', { groupId }, groupId, trx)
         await groups.update(groupId, change, trx)
         await events.add({ groupId, type: 'group:updated', objectId: groupId, actorId: actor.id }, trx)
       })
       return get(actor, groupId)
     },
-    /** Owner and teachers see everybody; others the whole roster only if it is shown, else whom they are linked or listen with, and owners and teachers. */
+    /** The owner sees everybody; others the whole roster only if it is shown, else the owner and whom they are linked or listen with. */
     people: async (actor: Actor, held: ReadonlySet<Relation>, groupId: string): Promise<{ items: GroupPerson[] }> => {
       const [group, members] = await Promise.all([groups.find(groupId), groups.members(groupId)])
       const seesAll = held.has('owner') || group?.isRosterShown === true
@@ -102,7 +113,7 @@ export const createGroupService = ({ db, groups, events, audit }: Deps) => {
     },
     setRole: async (actor: Actor, groupId: string, userId: string, role: Role, asker: Asker): Promise<GroupPerson> =>
       db.transaction(async (trx) => {
-        await groups.lock(groupId, trx)
+        await stillAllowed(actor, 'group:set-role', { groupId }, groupId, trx)
         if (role !== 'owner') await keepAnOwner(groupId, userId, trx)
         if (!(await groups.setRole(groupId, userId, role, trx))) throw problem('not-found')
         await events.add({ groupId, type: 'person:updated', objectId: userId, actorId: actor.id }, trx)
@@ -121,8 +132,10 @@ export const createGroupService = ({ db, groups, events, audit }: Deps) => {
         if (!member) throw problem('not-found')
         return member
       }),
-    removePerson: takeOut,
-    leave: (actor: Actor, groupId: string, asker: Asker): Promise<void> => takeOut(actor, groupId, actor.id, asker)
+    removePerson: (actor: Actor, groupId: string, userId: string, asker: Asker): Promise<void> =>
+      takeOut(actor, 'group:set-role', groupId, userId, asker),
+    leave: (actor: Actor, groupId: string, asker: Asker): Promise<void> =>
+      takeOut(actor, 'group:leave', groupId, actor.id, asker)
   }
 }
 export type GroupService = ReturnType<typeof createGroupService>

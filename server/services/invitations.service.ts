@@ -11,6 +11,7 @@ import type { EventsRepo } from '@server/repositories/events.repo'
 import type { GroupsRepo } from '@server/repositories/groups.repo'
 import type { InvitationsRepo } from '@server/repositories/invitations.repo'
 import type { GroupService } from '@server/services/groups.service'
+import { lockGroup, stillAllowed } from '@server/services/still-allowed'
 
 interface Deps {
   db: Db
@@ -31,6 +32,9 @@ export const createInvitationService = ({ db, invitations, groups, groupService,
 
   /** Uses the link up and makes its bearer a member, in the caller's transaction. Who is a member already keeps their role. */
   const redeem = async (actor: Actor, token: string, asker: Asker, trx: Db): Promise<string> => {
+    const found = await invitations.byToken(hashOf(token), now(), trx)
+    if (!found?.isOpen) throw gone()
+    await lockGroup(found.groupId, trx)
     const used = await invitations.use(hashOf(token), actor.id, now(), trx)
     if (!used) throw gone()
     const isNew = await groups.addMember(used.groupId, actor.id, used.role, trx)
@@ -70,6 +74,7 @@ export const createInvitationService = ({ db, invitations, groups, groupService,
       const token = randomBytes(32).toString('base64url')
       const expiresAt = new Date(now().getTime() + limits.invitationDays * 24 * 3600_000)
       await db.transaction(async (trx) => {
+        await stillAllowed(actor, 'group:invite', { groupId }, groupId, trx)
         await invitations.insert({ ...input, groupId, tokenHash: hashOf(token), createdBy: actor.id, expiresAt }, trx)
         await events.add({ groupId, type: 'invitation:changed', objectId: input.id, actorId: actor.id }, trx)
         await audit.add(
@@ -98,8 +103,11 @@ export const createInvitationService = ({ db, invitations, groups, groupService,
 
     revoke: (actor: Actor, invitationId: string, asker: Asker): Promise<void> =>
       db.transaction(async (trx) => {
-        const groupId = await invitations.revoke(invitationId, now(), trx)
-        if (!groupId) throw problem('gone', { detail: 'It has been used already.' })
+        const groupId = await invitations.groupOf(invitationId, trx)
+        if (!groupId) throw problem('not-found')
+        await stillAllowed(actor, 'invitation:revoke', { invitationId }, groupId, trx)
+        if (!(await invitations.revoke(invitationId, now(), trx)))
+          throw problem('gone', { detail: 'It has been used already.' })
         await events.add({ groupId, type: 'invitation:changed', objectId: invitationId, actorId: actor.id }, trx)
         await audit.add(
           {

@@ -1,9 +1,10 @@
 // A recording made in the browser arrives piece by piece while it is made, so that a closed lid loses seconds, not the take.
+import { randomUUID } from 'node:crypto'
 import { mkdir, open, rename, rm } from 'node:fs/promises'
 import { join } from 'node:path'
 import type { Take } from '@shared/contracts/takes'
 import { problem } from '@shared/errors/problems'
-import { limits } from '@shared/limits'
+import type { Bounds } from '@shared/limits'
 import type { Db } from '@server/db/knex'
 import type { Actor } from '@server/http/handlers'
 import { joinRecording } from '@server/media/recording'
@@ -17,13 +18,15 @@ interface Deps {
   recordings: RecordingsRepo
   takes: Pick<TakeService, 'create' | 'own'>
   storage: Pick<MediaStorage, 'incomingFolder'>
+  bounds: Pick<Bounds, 'uploadBytes' | 'openRecordings'>
 }
 
 const pieceName = (index: number): string => String(index).padStart(6, '0')
 
 /** Writes a piece so that it is whole on the disk, or not there. */
 const writePiece = async (path: string, bytes: AsyncIterable<Buffer>): Promise<number> => {
-  const beside = `${path}.part`
+  // The same piece may arrive twice at once.
+  const beside = `${path}.${randomUUID()}.part`
   const file = await open(beside, 'w', 0o600)
   let size = 0
   try {
@@ -42,7 +45,7 @@ const writePiece = async (path: string, bytes: AsyncIterable<Buffer>): Promise<n
   return size
 }
 
-export const createRecordingService = ({ db, recordings, takes, storage }: Deps) => {
+export const createRecordingService = ({ db, recordings, takes, storage, bounds }: Deps) => {
   const folderOf = async (id: string): Promise<string> => {
     const folder = join(await storage.incomingFolder(), `recording-${id}`)
     await mkdir(folder, { recursive: true })
@@ -67,6 +70,10 @@ export const createRecordingService = ({ db, recordings, takes, storage }: Deps)
       }
       await db.transaction(async (trx) => {
         await stillAllowed(actor, 'group:add-take', { groupId }, groupId, trx)
+        if ((await recordings.openCount(actor.id, trx)) >= bounds.openRecordings)
+          throw problem('over-quota', {
+            detail: 'Too many recordings are waiting to be kept. Keep or drop some first.'
+          })
         await recordings.insert({ ...input, groupId, uploaderId: actor.id }, trx)
       })
       return { id: input.id, nextPiece: 0 }
@@ -75,7 +82,7 @@ export const createRecordingService = ({ db, recordings, takes, storage }: Deps)
     piece: async (id: string, index: number, bytes: AsyncIterable<Buffer>): Promise<{ nextPiece: number }> => {
       const recording = await known(id)
       if (recording.takeId) throw problem('already-there', { detail: 'This recording is kept already.' })
-      if (recording.bytes >= limits.uploadBytes) throw problem('too-large')
+      if (recording.bytes >= bounds.uploadBytes) throw problem('too-large')
       if (index > recording.nextPiece) throw problem('conflict', { detail: `Piece ${recording.nextPiece} comes next.` })
       const size = await writePiece(join(await folderOf(id), pieceName(index)), bytes)
       if (index === recording.nextPiece) await recordings.countPiece(id, index, size)
@@ -91,14 +98,23 @@ export const createRecordingService = ({ db, recordings, takes, storage }: Deps)
         })
       }
       const folder = await folderOf(id)
-      const target = join(folder, 'whole')
+      // Finished twice at once, each has a file of its own; the take's id decides who was first.
+      const target = join(folder, `whole-${randomUUID()}`)
       const pieces = Array.from({ length: recording.nextPiece }, (_, index) => join(folder, pieceName(index)))
-      const joined = await joinRecording({ pieces, target, maxBytes: limits.uploadBytes })
-      if (!joined.ok) throw problem('not-audio', { detail: joined.error.sentence })
-      const take = await takes.create(actor, recording.groupId, input, { path: target, bytes: joined.value.bytes })
-      await recordings.setTake(id, take.id)
-      await rm(folder, { recursive: true, force: true })
-      return take
+      try {
+        const joined = await joinRecording({ pieces, target, maxBytes: bounds.uploadBytes })
+        if (!joined.ok) throw problem('not-audio', { detail: joined.error.sentence })
+        const take = await takes.create(actor, recording.groupId, input, { path: target, bytes: joined.value.bytes })
+        await recordings.setTake(id, take.id)
+        await rm(folder, { recursive: true, force: true })
+        return take
+      } catch (error) {
+        // The other one was through and has cleared the pieces away.
+        const now = await recordings.find(id)
+        if (now?.takeId) return takes.own(now.takeId)
+        await rm(target, { force: true })
+        throw error
+      }
     },
 
     drop: async (id: string): Promise<void> => {

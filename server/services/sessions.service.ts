@@ -60,10 +60,14 @@ export const createSessionService = ({ db, sessions, takes, access, events, now 
     if (stored.endedAt) throw problem('session-over')
     return stored
   }
-  const whole = async (id: string, held: Held): Promise<Session> => {
+  const find = async (id: string, held: Held = new Set()): Promise<Session | null> => {
     const stored = await sessions.find(id)
-    if (!stored) throw problem('not-found')
-    return withPeople(stored, held, sessions)
+    return stored && withPeople(stored, held, sessions)
+  }
+  const whole = async (id: string, held: Held): Promise<Session> => {
+    const session = await find(id, held)
+    if (!session) throw problem('not-found')
+    return session
   }
 
   /** When whoever leads is not here any more, the lead falls to the one who has been here longest. */
@@ -74,6 +78,7 @@ export const createSessionService = ({ db, sessions, takes, access, events, now 
   }
 
   return {
+    find,
     get: whole,
     liveOfGroup: async (actor: Actor, groupId: string): Promise<{ items: Session[] }> => {
       const all = await sessions.liveOfGroup(groupId)
@@ -116,7 +121,9 @@ export const createSessionService = ({ db, sessions, takes, access, events, now 
       return whole(sessionId, new Set([...held, 'author' as const]))
     },
     end: async (actor: Actor, held: Held, id: string): Promise<Session> => {
+      const { groupId } = await whole(id, held)
       await db.transaction(async (trx) => {
+        await stillAllowed(actor, 'session:end', { sessionId: id }, groupId, trx)
         const stored = await sessions.lock(id, trx)
         if (!stored) throw problem('not-found')
         if (stored.endedAt) return

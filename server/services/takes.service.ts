@@ -1,10 +1,12 @@
+import { z } from 'zod'
 import { abilitiesOn } from '@shared/access/permissions'
 import type { Relation } from '@shared/access/relations'
+import { Instant, Uuid } from '@shared/contracts/common'
 import type { PiecesManifest, Reach, Take, TakeCard } from '@shared/contracts/takes'
 import { takeRoutes } from '@shared/contracts/takes'
 import { addressOf } from '@shared/contracts/route'
 import { problem } from '@shared/errors/problems'
-import { limits } from '@shared/limits'
+import type { Bounds } from '@shared/limits'
 import type { PieceManifest } from '@shared/audio/piece-manifest'
 import { takeRelations } from '@server/access/take-relations'
 import type { Db } from '@server/db/knex'
@@ -31,6 +33,7 @@ interface Deps {
   audit: AuditRepo
   storage: MediaStorage
   queue: Pick<JobQueue, 'ingest'>
+  bounds: Pick<Bounds, 'takesPerMember' | 'bytesPerMember'>
 }
 type Held = ReadonlySet<Relation>
 
@@ -54,11 +57,11 @@ const mimeOf: Record<Probe['container'], string> = {
 }
 const encodeCursor = (take: StoredTake): string =>
   Buffer.from(JSON.stringify([take.createdAt, take.id])).toString('base64url')
+const Cursor = z.tuple([Instant, Uuid])
 const decodeCursor = (text: string | undefined): TakeCursor | null => {
   if (!text) return null
   try {
-    const [createdAt, id] = JSON.parse(Buffer.from(text, 'base64url').toString()) as [string, string]
-    if (Number.isNaN(Date.parse(createdAt)) || !/^[0-9a-f-]{36}$/.test(id)) throw new Error('malformed')
+    const [createdAt, id] = Cursor.parse(JSON.parse(Buffer.from(text, 'base64url').toString()))
     return { createdAt, id }
   } catch {
     throw problem('invalid', { errors: [{ in: 'query', path: 'cursor', message: 'Not a place in this list.' }] })
@@ -74,7 +77,7 @@ const withAbilities = (take: StoredTake, held: Held): Take => {
 }
 
 export const createTakeService = (deps: Deps) => {
-  const { db, takes, tunes, access, groups, events, audit, storage, queue } = deps
+  const { db, takes, tunes, access, groups, events, audit, storage, queue, bounds } = deps
 
   const get = async (held: Held, takeId: string): Promise<Take> => {
     const take = await takes.find(takeId)
@@ -144,7 +147,7 @@ export const createTakeService = (deps: Deps) => {
         await db.transaction(async (trx) => {
           await stillAllowed(actor, 'group:add-take', { groupId }, groupId, trx)
           const used = await takes.usage(actor.id, groupId, trx)
-          if (used.takes >= limits.takesPerMember || used.bytes + file.bytes > limits.bytesPerMember) {
+          if (used.takes >= bounds.takesPerMember || used.bytes + file.bytes > bounds.bytesPerMember) {
             throw problem('over-quota', {
               detail: 'Your takes in this group have used up their room. Delete some first.'
             })
@@ -170,7 +173,7 @@ export const createTakeService = (deps: Deps) => {
         // Sent twice at once: the other one won and its bytes are the same take's.
         const winner = await takes.find(input.id)
         if (winner?.uploader.id === actor.id) return withAbilities(winner, uploaderHolds)
-        await storage.removeTake(input.id)
+        if (!winner) await storage.removeTake(input.id)
         throw error
       }
       return get(uploaderHolds, input.id)
@@ -243,6 +246,9 @@ export const createTakeService = (deps: Deps) => {
       if (!(await storage.find(takeId, { kind: 'original' })))
         throw problem('gone', { detail: 'The file was not kept because it cannot be read. Send another.' })
       await db.transaction(async (trx) => {
+        await stillAllowed(actor, 'take:edit', { takeId }, take.groupId, trx)
+        // Asked twice at once, it waits once.
+        if ((await takes.find(takeId, trx))?.state !== 'failed') return
         await takes.setWaiting(takeId, trx)
         await events.add(
           { groupId: take.groupId, type: 'take:updated', objectId: takeId, takeId, actorId: actor.id },

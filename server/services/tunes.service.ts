@@ -3,7 +3,9 @@ import { abilitiesOn } from '@shared/access/permissions'
 import type { Relation } from '@shared/access/relations'
 import type { Tune } from '@shared/contracts/tunes'
 import { problem } from '@shared/errors/problems'
+import type { OperationFault } from '@shared/documents/document'
 import { chartDocument } from '@shared/music/chart-document'
+import { checkChart } from '@shared/music/validate-chart'
 import type { ChartBody } from '@shared/music/types'
 import type { Db } from '@server/db/knex'
 import type { Actor, Asker } from '@server/http/handlers'
@@ -21,6 +23,9 @@ interface Deps {
   audit: AuditRepo
 }
 type Held = ReadonlySet<Relation>
+
+const unreadable = ({ message, path = [] }: OperationFault) =>
+  problem('invalid', { detail: message, errors: [{ in: 'body', path: ['chart', ...path].join('.'), message }] })
 
 export const createTuneService = ({ db, tunes, documents, events, audit }: Deps) => {
   const withAbilities = (tune: StoredTune, actor: Actor, held: Held): Tune => {
@@ -55,13 +60,16 @@ export const createTuneService = ({ db, tunes, documents, events, audit }: Deps)
       groupId: string,
       input: { id: string; title: string; chart?: ChartBody | undefined }
     ): Promise<Tune> => {
-      const before = await tunes.find(input.id)
-      if (before) {
-        if (before.groupId !== groupId || before.createdBy?.id !== actor.id) throw problem('already-there')
-        return withAbilities(before, actor, held)
-      }
+      const chart = input.chart ? checkChart(input.chart) : null
+      if (chart && !chart.ok) throw unreadable(chart.error)
       await db.transaction(async (trx) => {
         await stillAllowed(actor, 'group:add-tune', { groupId }, groupId, trx)
+        const before = await tunes.find(input.id, trx)
+        if (before) {
+          // Sent again after a lost answer.
+          if (before.groupId !== groupId || before.createdBy?.id !== actor.id) throw problem('already-there')
+          return
+        }
         await tunes.insert({ id: input.id, groupId, title: input.title, createdBy: actor.id }, trx)
         await events.add({ groupId, type: 'tune:created', objectId: input.id, actorId: actor.id }, trx)
         if (input.chart) {

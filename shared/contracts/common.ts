@@ -2,7 +2,8 @@
 import { z } from 'zod'
 import { limits } from '@shared/limits'
 
-export const Uuid = z.uuid()
+/** In the one spelling that databases and folders give back: lower case. */
+export const Uuid = z.uuid().regex(/^[^A-Z]*$/)
 export const Instant = z.iso.datetime({ offset: true })
 export const Seconds = z.number().min(0).max(limits.takeSec)
 export const Role = z.enum(['owner', 'teacher', 'member', 'listener'])
