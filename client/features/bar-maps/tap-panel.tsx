@@ -184,8 +184,10 @@ export function TapPanel(props: TapPanelProps) {
 }
 
 /** The same object as long as it says the same: a preview that draws the desk anew must not lead to another preview. */
-// oxlint-disable-next-line react-hooks/exhaustive-deps, react/memo-dependencies
-const useSame = <T,>(value: T): T => useMemo(() => value, [JSON.stringify(value)])
+const useSame = <T,>(value: T): T => {
+  const said = JSON.stringify(value)
+  return useMemo(() => JSON.parse(said) as T, [said])
+}
 
 const padWords = (mode: TapMode): string => (mode === 'bar lines' ? 'Tap on every bar line' : `Tap on ${mode}`)
 

@@ -1,4 +1,4 @@
-import { useState, type KeyboardEvent } from 'react'
+import { useRef, useState, type KeyboardEvent } from 'react'
 import { chartDocument } from '@shared/music/chart-document'
 import { chartLimits } from '@shared/music/chart-schema'
 import type { ChartBody } from '@shared/music/types'
@@ -16,8 +16,8 @@ export interface ChartBarFieldProps {
   onKeep(text: string): void
   /** After Enter or Tab (1) and with Shift (-1): the bar there wants to be edited. */
   onMove(step: 1 | -1): void
-  /** Esc, or the focus went elsewhere. */
-  onClose(): void
+  /** Esc (`byKey`), or the focus went elsewhere with a bar that can be read. */
+  onClose(byKey: boolean): void
 }
 
 /** Why the bar cannot be read, in a sentence; null when it can. */
@@ -31,6 +31,8 @@ export function ChartBarField({ body, sectionId, index, label, onKeep, onMove, o
   const written = body.sections.find(({ id }) => id === sectionId)?.bars[index] ?? ''
   const [text, setText] = useState(written)
   const [fault, setFault] = useState<string | null>(null)
+  // A field that leaves the page may lose the focus once more.
+  const isDone = useRef(false)
   const faultId = `fault-${sectionId}-${index}`
 
   /** True when what stands here is kept. */
@@ -47,10 +49,13 @@ export function ChartBarField({ body, sectionId, index, label, onKeep, onMove, o
     if (event.key === 'Escape') {
       event.preventDefault()
       event.stopPropagation()
-      onClose()
+      isDone.current = true
+      onClose(true)
     } else if (event.key === 'Enter' || event.key === 'Tab') {
       event.preventDefault()
-      if (keep()) onMove(event.shiftKey ? -1 : 1)
+      if (!keep()) return
+      isDone.current = true
+      onMove(event.shiftKey ? -1 : 1)
     }
   }
   return (
@@ -75,7 +80,7 @@ export function ChartBarField({ body, sectionId, index, label, onKeep, onMove, o
         }}
         onKeyDown={handleKey}
         onBlur={() => {
-          if (keep()) onClose()
+          if (!isDone.current && keep()) onClose(false)
         }}
       />
       {fault ? (
