@@ -32,6 +32,8 @@ export interface DeskLanesProps {
   isNarrow: boolean
   /** What lays the first bars; null for those who may not. */
   layBars: ReactNode
+  /** Under the timeline. */
+  barsPanel: ReactNode
   /** Stands between strip and timeline. */
   children: ReactNode
 }
@@ -86,6 +88,7 @@ export function DeskLanes(props: DeskLanesProps) {
               barMap={model.barMap}
               barLabel={model.barLabel}
               barName={model.barName}
+              chordStyle={material.chordStyle}
               chordsOf={model.hasChords ? model.chordsOf : undefined}
               sections={model.sectionMarks}
               spans={spans}
@@ -105,10 +108,13 @@ export function DeskLanes(props: DeskLanesProps) {
               lines={hearing.lines}
               leaderName={hearing.leaderName}
               valueText={model.valueText}
+              editBars={props.isEditingBars}
+              onMoveBar={material.edits.moveBar}
             />
           </PanelBoundary>
         </div>
       )}
+      {props.barsPanel}
     </>
   )
 }

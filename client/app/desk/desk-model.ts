@@ -1,7 +1,7 @@
 // What the desk shows of a take, derived from its bar map and its tune's chart each time either changes. Pure.
 import type { BarComments } from '@client/timeline/form-strip'
 import type { BarChord, SectionMark } from '@client/timeline/timeline-types'
-import { chordText } from '@shared/music/chord-typeset'
+import { chordText, type ChordStyle } from '@shared/music/chord-typeset'
 import { chordWords } from '@shared/music/chord-words'
 import { chordAt, formLength, formOf, type Form } from '@shared/music/form'
 import type { ChartBody } from '@shared/music/types'
@@ -18,6 +18,8 @@ export interface DeskModelInput {
   durationSec: Sec
   bars: BarMapBody | null
   chart: ChartBody | null
+  /** How the reader likes chords written. */
+  style?: ChordStyle
 }
 
 /** A bar as the text equivalent of the lanes says it. */
@@ -50,7 +52,7 @@ export interface DeskModel {
   barRows(): BarRow[]
 }
 
-export const deskModel = ({ durationSec, bars, chart }: DeskModelInput): DeskModel => {
+export const deskModel = ({ durationSec, bars, chart, style }: DeskModelInput): DeskModel => {
   const barMap = bars ? createBarMap(bars) : null
   const length = chart ? formLength(chart) : 0
   const layout: Form | null = chart && length > 0 ? formOf(chart) : null
@@ -66,7 +68,7 @@ export const deskModel = ({ durationSec, bars, chart }: DeskModelInput): DeskMod
     sections,
     chordAt: (formBar, beat) => {
       const found = layout && chordAt(layout, formBar, beat)
-      return found ? chordText(found.chord) : null
+      return found ? chordText(found.chord, style) : null
     }
   }
 
@@ -124,7 +126,7 @@ export const deskModel = ({ durationSec, bars, chart }: DeskModelInput): DeskMod
           time: timeWords(Math.max(0, barMap?.barSec(bar) ?? 0)),
           section: section ? (sectionWords(section, sections) ?? '') : '',
           chords: soundingIn(bar)
-            .map(({ chord }) => chordText(chord))
+            .map(({ chord }) => chordText(chord, style))
             .join(', ')
         }
       })

@@ -1,7 +1,7 @@
 import { useCallback, useRef, useState } from 'react'
-import { Link } from 'react-router-dom'
 import type { Me } from '@shared/contracts/account'
 import type { Take } from '@shared/contracts/takes'
+import { AccountMenu } from '@client/features/account/account-menu'
 import { useCommentNews } from '@client/features/comments/use-comment-news'
 import type { ShownComment } from '@client/features/comments/changes'
 import type { SpanEdge } from '@client/features/comments/move-row'
@@ -13,12 +13,14 @@ import type { TimelineHandle } from '@client/timeline/timeline'
 import type { Player } from '@client/transport/player'
 import { TransportBar } from '@client/transport/transport-bar'
 import { AppShell } from '@client/ui/app-shell'
-import { Button, buttonClass } from '@client/ui/button'
+import { Button } from '@client/ui/button'
 import { useSay } from '@client/ui/live-log'
 import { useToast } from '@client/ui/toasts'
 import { nudgeSec, type Snap } from '@shared/timing/snap'
 import type { Span } from '@shared/timing/types'
+import { BarsPanel } from './bars-panel'
 import { BarsTable } from './bars-table'
+import { DeskActions } from './desk-actions'
 import { DeskLanes } from './desk-lanes'
 import { DeskMargin } from './desk-margin'
 import { PanelBoundary } from './panel-boundary'
@@ -48,9 +50,10 @@ export function TakeDesk({ me, take, player, onGone }: TakeDeskProps) {
   const say = useSay()
   const material = useTakeMaterial(take, me)
   const { model, comments, letters, tune, bars } = material
-  const hearing = useHearing(player)
-  const { controls } = hearing
   const [selection, setSelection] = useState<Span | null>(null)
+  const hearing = useHearing(me, take, player, selection)
+  const { controls } = hearing
+  const [areBarsOpen, setBarsOpen] = useState(false)
   const [selectedId, setSelectedId] = useState<string | null>(null)
   const [snap, setSnap] = useState<Snap>('bar')
   const [isFollowing, setFollowing] = useState(true)
@@ -115,6 +118,10 @@ export function TakeDesk({ me, take, player, onGone }: TakeDeskProps) {
     const moved = edge === 'start' ? { ...span, startSec: sec } : { ...span, endSec: sec }
     return moved.endSec > moved.startSec ? moved : span
   }
+  const closeBars = () => {
+    material.preview(null)
+    setBarsOpen(false)
+  }
   const undo = () => {
     const bringBack = lastRemoval.current
     lastRemoval.current = null
@@ -176,7 +183,16 @@ export function TakeDesk({ me, take, player, onGone }: TakeDeskProps) {
   )
 
   return (
-    <AppShell crumbs={crumbs} right={hearing.header} fill>
+    <AppShell
+      crumbs={crumbs}
+      right={
+        <>
+          {hearing.header}
+          <AccountMenu />
+        </>
+      }
+      fill
+    >
       <title>{`${take.title} · Plumbline`}</title>
       <h1 className="sr-only">{take.title}</h1>
       <div className="grid min-h-0 flex-1 grid-cols-1 gap-2 px-2 sm:gap-3 sm:px-5 lg:grid-cols-[minmax(0,1fr)_20rem] xl:grid-cols-[minmax(0,1fr)_23.5rem]">
@@ -197,32 +213,54 @@ export function TakeDesk({ me, take, player, onGone }: TakeDeskProps) {
               onSnap={setSnap}
               isFollowing={isFollowing}
               onFollow={setFollowing}
-              isEditingBars={false}
+              isEditingBars={areBarsOpen}
               isNarrow={isPhone}
-              layBars={null}
+              layBars={
+                can('take:edit-bars') && !areBarsOpen ? (
+                  <Button onClick={() => setBarsOpen(true)}>Lay the bars</Button>
+                ) : null
+              }
+              barsPanel={
+                areBarsOpen ? (
+                  <BarsPanel
+                    me={me}
+                    material={material}
+                    player={player}
+                    controls={controls}
+                    selection={selection}
+                    onClose={closeBars}
+                  />
+                ) : null
+              }
             >
               <div className="flex flex-wrap items-center justify-between gap-x-4 gap-y-1">
                 <SelectionLine
                   model={model}
                   selection={selection}
                   onCopy={() => void copyAddress()}
-                  onClear={() => select(null)}
+                  onClear={isPhone ? () => select(null) : undefined}
                 />
-                <div className="flex flex-wrap items-center gap-x-1">
-                  {tune ? (
-                    <Link to={paths.tune(tune.id)} className={buttonClass('quiet')}>
-                      Edit the chart
-                    </Link>
-                  ) : can('take:edit') ? (
-                    <Button look="quiet" onClick={() => setOpen('tune')}>
-                      Put it to a tune
-                    </Button>
-                  ) : null}
-                  <Button look="quiet" onClick={() => setOpen('table')}>
-                    Bars and chords as a table
-                  </Button>
-                </div>
+                <DeskActions
+                  take={take}
+                  tune={tune}
+                  areBarsOpen={areBarsOpen}
+                  onBars={() => (areBarsOpen ? closeBars() : setBarsOpen(true))}
+                  onTune={() => setOpen('tune')}
+                  onTable={() => setOpen('table')}
+                />
               </div>
+              {hearing.pointed.map(({ name, span }) => (
+                <p key={name} className="text-sm text-pencil">
+                  {name} points at{' '}
+                  <button
+                    type="button"
+                    className="min-h-6 underline decoration-dotted underline-offset-2"
+                    onClick={() => select(span)}
+                  >
+                    {model.placeOf(span).place}
+                  </button>
+                </p>
+              ))}
             </DeskLanes>
           ) : (
             <div className="px-4 py-6 sm:px-6">
@@ -250,9 +288,7 @@ export function TakeDesk({ me, take, player, onGone }: TakeDeskProps) {
             onKeysOff={setKeysOff}
             isKeySheetOpen={open === 'keys'}
             onKeySheet={(isOpen) => setOpen(isOpen ? 'keys' : null)}
-          >
-            {hearing.transport}
-          </TransportBar>
+          />
         </PanelBoundary>
       </div>
       {open === 'table' ? (

@@ -12,9 +12,11 @@ export const useDeskPlayer = (take: Take, onTrouble: (message: string) => void):
     const made = createMediaElementPlayer()
     made.on('fault', ({ message }) => onTrouble(message))
     made.on('blocked', () => onTrouble('Press play once more: the browser lets sound out after a tap.'))
+    // Made in an effect, so that leaving and coming back (also as React's strict mode does it) makes a new one.
+    // oxlint-disable-next-line react/set-state-in-effect
     setPlayer(made)
     return () => made.dispose()
-  }, [id, onTrouble])
+  }, [onTrouble])
   useEffect(() => {
     if (!player || state !== 'ready' || durationSec === null) return
     void player.load({ url: audioUrl(id), durationSec, gainDb: gainDb ?? 0 })

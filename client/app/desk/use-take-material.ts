@@ -1,24 +1,28 @@
 // What the lanes of a take are made of: its bars, its tune's chart, its comments, its peaks.
-import { useMemo } from 'react'
+import { useMemo, useState } from 'react'
 import type { Me } from '@shared/contracts/account'
-import { barMapRoutes } from '@shared/contracts/bar-maps'
 import type { Take } from '@shared/contracts/takes'
 import { type Tune, tuneRoutes } from '@shared/contracts/tunes'
-import { barMapDocument } from '@shared/timing/bar-map-document'
+import { useBarEdits, type BarEdits } from '@client/features/bar-maps/use-bar-edits'
+import { useBarMap, type LiveBarMap } from '@client/features/bar-maps/use-bar-map'
 import { useTakeComments, type TakeComments } from '@client/features/comments/api'
 import type { ShownComment } from '@client/features/comments/changes'
 import { lettersOf } from '@client/features/comments/letters'
 import { usePeaks } from '@client/features/takes/peaks'
+import { useChordStyle } from '@client/features/tunes/chord-style'
 import { useRouteQuery } from '@client/lib/query'
-import { useDocument, type LiveDocument } from '@client/lib/use-document'
 import type { PeaksSource } from '@client/timeline/peaks-source'
 import type { CommentSpan } from '@client/timeline/timeline-types'
+import type { ChordStyle } from '@shared/music/chord-typeset'
 import type { BarMapBody } from '@shared/timing/types'
-import type { BarMapOperation } from '@shared/timing/bar-map-schema'
 import { deskModel, type DeskModel } from './desk-model'
 
 export interface TakeMaterial {
-  bars: LiveDocument<BarMapBody, BarMapOperation>
+  bars: LiveBarMap
+  edits: BarEdits
+  /** Draws these bars in place of the kept ones, while they wait for an answer. */
+  preview: (body: BarMapBody | null) => void
+  chordStyle: ChordStyle
   tune: Tune | null
   comments: TakeComments
   letters: ReadonlyMap<string, string>
@@ -31,12 +35,10 @@ export interface TakeMaterial {
 
 export const useTakeMaterial = (take: Take, me: Me): TakeMaterial => {
   const { id: takeId, tuneId } = take
-  const bars = useDocument({
-    kind: barMapDocument,
-    routes: barMapRoutes,
-    params: useMemo(() => ({ takeId }), [takeId]),
-    memberId: me.id
-  })
+  const bars = useBarMap(takeId, me.id)
+  const edits = useBarEdits(bars)
+  const [previewed, preview] = useState<BarMapBody | null>(null)
+  const [chordStyle] = useChordStyle()
   const tune = useRouteQuery(tuneRoutes.get, { params: { tuneId: tuneId ?? '' } }, { enabled: tuneId !== null })
   const comments = useTakeComments(takeId, me)
   const peaks = usePeaks(takeId, take.state === 'ready')
@@ -44,7 +46,11 @@ export const useTakeMaterial = (take: Take, me: Me): TakeMaterial => {
   const durationSec = take.durationSec ?? 0
   const chart = (tuneId && tune.data?.chart) || null
   const { body, fault } = bars
-  const model = useMemo(() => deskModel({ durationSec, bars: body, chart }), [durationSec, body, chart])
+  const drawn = previewed ?? body
+  const model = useMemo(
+    () => deskModel({ durationSec, bars: drawn, chart, style: chordStyle }),
+    [durationSec, drawn, chart, chordStyle]
+  )
   const letters = useMemo(() => lettersOf(comments.comments), [comments.comments])
   const spans = useMemo(
     () => comments.comments.map((comment) => spanOf(comment, letters, model)),
@@ -52,6 +58,9 @@ export const useTakeMaterial = (take: Take, me: Me): TakeMaterial => {
   )
   return {
     bars,
+    edits,
+    preview,
+    chordStyle,
     tune: (tuneId && tune.data) || null,
     comments,
     letters,

@@ -19,6 +19,8 @@ import { WordsForm } from './words-form'
 /** What all comments of the margin share; the same object from one drawing to the next. */
 export interface CommentHands {
   memberId: string
+  /** Short names by id. */
+  names: ReadonlyMap<string, string>
   acts: CommentActs
   /** Jump to it, loop it, mark it on the waveform. */
   onListen: (comment: ShownComment) => void
@@ -48,6 +50,7 @@ export const CommentArticle = memo(function CommentArticle(props: CommentArticle
   const { acts } = hands
   const [doing, setDoing] = useState<Doing>('reading')
   const can = (ability: string) => comment.abilities.includes(ability)
+  const called = ({ id, name }: { id: string; name: string }) => hands.names.get(id) ?? name
   const isSettled = opens(comment.kind) && !comment.isOpen
   const label = `Comment ${letter}, ${place.place}, ${comment.kind}${isSettled ? ', settled' : ''}, by ${comment.author.name}`
 
@@ -123,11 +126,12 @@ export const CommentArticle = memo(function CommentArticle(props: CommentArticle
         ) : null}
         <SaidBy
           author={comment.author}
+          called={called(comment.author)}
           at={comment.createdAt}
           sending={comment.sending}
           words={[
             comment.kind,
-            ...(isSettled ? [comment.settledBy ? `settled by ${comment.settledBy.name}` : 'settled'] : [])
+            ...(isSettled ? [comment.settledBy ? `settled by ${called(comment.settledBy)}` : 'settled'] : [])
           ]}
         >
           {can('comment:reply') && doing !== 'answering' ? (
@@ -179,6 +183,7 @@ function Replies(props: { comment: ShownComment; hands: CommentHands; children: 
           key={reply.id}
           reply={reply}
           acts={hands.acts}
+          called={hands.names.get(reply.author.id) ?? reply.author.name}
           onRemove={(replyId) => hands.onRemoveReply(comment.id, replyId)}
         />
       ))}

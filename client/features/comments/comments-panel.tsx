@@ -11,6 +11,7 @@ import type { TakeComments } from './api'
 import type { ShownComment } from './changes'
 import { CommentArticle, type CommentArticleProps, type CommentHands } from './comment-article'
 import type { SpanEdge } from './move-row'
+import { shortNames } from './short-names'
 import { SmallButton } from './small-button'
 import { WriteBox } from './write-box'
 
@@ -45,6 +46,17 @@ export function CommentsPanel(props: CommentsPanelProps) {
   const openCount = useMemo(() => comments.filter(({ isOpen }) => isOpen).length, [comments])
   const shown = filter === 'open' ? comments.filter(({ isOpen }) => isOpen) : comments
 
+  const people = comments.flatMap(({ author, settledBy, replies }) => [
+    author,
+    ...(settledBy ? [settledBy] : []),
+    ...replies.map((reply) => reply.author)
+  ])
+  // Articles are drawn anew when the people change, not with every comment.
+  const peopleKey = JSON.stringify([...new Map(people.map(({ id, name }) => [id, name]))].sort())
+  const names = useMemo(
+    () => shortNames((JSON.parse(peopleKey) as [string, string][]).map(([id, name]) => ({ id, name }))),
+    [peopleKey]
+  )
   const hands = useMemo<CommentHands>(() => {
     const gone = (text: string, undo: () => boolean) => {
       toast({ text, undo: () => void undo() })
@@ -52,13 +64,14 @@ export function CommentsPanel(props: CommentsPanelProps) {
     }
     return {
       memberId: me.id,
+      names,
       acts,
       onListen: (comment) => latest.current.onListen(comment),
       onRemove: (comment) => gone('Comment deleted.', acts.remove(comment.id)),
       onRemoveReply: (commentId, replyId) => gone('Answer deleted.', acts.removeReply(commentId, replyId)),
       nudged: (span, edge, steps) => latest.current.nudged(span, edge, steps)
     }
-  }, [acts, me.id, toast, latest])
+  }, [acts, me.id, names, toast, latest])
 
   useEffect(() => {
     if (!selectedId) return
@@ -97,6 +110,8 @@ export function CommentsPanel(props: CommentsPanelProps) {
           {said.fault.message}
         </Notice>
       ) : null}
+      {/* APG feed: Page keys go from article to article. */}
+      {/* oxlint-disable-next-line jsx-a11y/no-noninteractive-element-interactions */}
       <div
         ref={feed}
         role="feed"

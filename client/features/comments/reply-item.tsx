@@ -10,10 +10,11 @@ import { WordsForm } from './words-form'
 export interface ReplyItemProps {
   reply: ShownReply
   acts: CommentActs
+  called: string
   onRemove: (replyId: string) => void
 }
 
-export function ReplyItem({ reply, acts, onRemove }: ReplyItemProps) {
+export function ReplyItem({ reply, acts, called, onRemove }: ReplyItemProps) {
   const [text, setText] = useState<string | null>(null)
   if (text !== null)
     return (
@@ -37,12 +38,16 @@ export function ReplyItem({ reply, acts, onRemove }: ReplyItemProps) {
   return (
     <li className="border-l border-rule pl-3">
       <p className="break-words whitespace-pre-wrap">{reply.text}</p>
-      <SaidBy author={reply.author} at={reply.createdAt} sending={reply.sending}>
+      <SaidBy author={reply.author} called={called} at={reply.createdAt} sending={reply.sending}>
         {reply.abilities.includes('reply:edit') ? (
-          <SmallButton onClick={() => setText(reply.text)}>Edit answer</SmallButton>
+          <SmallButton onClick={() => setText(reply.text)} aria-label="Edit answer">
+            Edit
+          </SmallButton>
         ) : null}
         {reply.abilities.includes('reply:delete') ? (
-          <SmallButton onClick={() => onRemove(reply.id)}>Delete answer</SmallButton>
+          <SmallButton onClick={() => onRemove(reply.id)} aria-label="Delete answer">
+            Delete
+          </SmallButton>
         ) : null}
       </SaidBy>
       <Refused sending={reply.sending} acts={acts} />
