@@ -1,4 +1,4 @@
-import { useState } from 'react'
+import { useEffect, useRef, useState } from 'react'
 import type { Me } from '@shared/contracts/account'
 import type { Tune } from '@shared/contracts/tunes'
 import { formLength } from '@shared/music/form'
@@ -33,26 +33,30 @@ const hintOf = ({ chart }: Tune): TuneHint => ({
 export function BarsPanel({ me, material, player, controls, selection, onClose }: BarsPanelProps) {
   const [bar, setBar] = useState<BarIndex | null>(null)
   const update = useUpdateMe()
+  const box = useRef<HTMLDivElement>(null)
+  useEffect(() => box.current?.scrollIntoView({ block: 'nearest' }), [])
   return (
-    <PanelBoundary name="the bars">
-      <BarEditor
-        document={material.bars}
-        edits={material.edits}
-        player={player}
-        controls={controls}
-        durationSec={material.model.durationSec}
-        tune={material.tune ? hintOf(material.tune) : null}
-        selection={selection}
-        bar={bar}
-        onBar={setBar}
-        tapLagMs={me.tapLagMs}
-        onTapLag={(tapLagMs) => update.mutate({ body: { tapLagMs } })}
-        onPreview={material.preview}
-        onClose={() => {
-          material.preview(null)
-          onClose()
-        }}
-      />
-    </PanelBoundary>
+    <div ref={box}>
+      <PanelBoundary name="the bars">
+        <BarEditor
+          document={material.bars}
+          edits={material.edits}
+          player={player}
+          controls={controls}
+          durationSec={material.model.durationSec}
+          tune={material.tune ? hintOf(material.tune) : null}
+          selection={selection}
+          bar={bar}
+          onBar={setBar}
+          tapLagMs={me.tapLagMs}
+          onTapLag={(tapLagMs) => update.mutate({ body: { tapLagMs } })}
+          onPreview={material.preview}
+          onClose={() => {
+            material.preview(null)
+            onClose()
+          }}
+        />
+      </PanelBoundary>
+    </div>
   )
 }

@@ -92,7 +92,7 @@ export const useHearing = (me: Me, take: Take, player: Player, selection: Span |
   return {
     controls: session?.controls ?? solo,
     ...(lines ? { lines } : {}),
-    ...(session?.leaderName && !session.state.isAway ? { leaderName: session.leaderName } : {}),
+    ...(session?.leaderName && !session.state.isAway ? { leaderName: firstName(session.leaderName) } : {}),
     header: session ? (
       <>
         <SessionBar
@@ -120,13 +120,15 @@ export const useHearing = (me: Me, take: Take, player: Player, selection: Span |
   }
 }
 
+const firstName = (name: string): string => name.split(' ')[0] ?? name
+
 /** Stepped away: one's own line in ink, the brass one where the others are. */
 const linesApart = (session: DeskSession, player: Player): LineSource[] => [
   { kind: 'own', positionSec: () => player.heardPosition },
   {
     kind: 'session',
     positionSec: session.sharedSec,
-    ...(session.leaderName ? { label: session.leaderName } : {})
+    ...(session.leaderName ? { label: firstName(session.leaderName) } : {})
   }
 ]
 
