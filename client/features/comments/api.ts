@@ -75,7 +75,7 @@ const queueFor = (client: QueryClient, memberId: string, takeId: string): Change
   const queue = createChangeQueue({
     store: commentOutbox(memberId, takeId),
     send: async ({ change }) => takeIn(client, takeId, change.commentId, await sendChange(takeId, change)),
-    now: Date.now,
+    now: () => Date.now(),
     wait
   })
   queues.set(key, { client, queue })

@@ -39,6 +39,8 @@ export const createChangeQueue = ({ store, send, now, wait }: ChangeQueueDeps): 
   let pending: readonly PendingChange[] = []
   let inFlight: string | null = null
   let isDraining = false
+  /** Ends the nap of a queue that only holds back deletions. */
+  let wakeUp = (): void => {}
 
   const set = (next: readonly PendingChange[]): void => {
     pending = next
@@ -94,7 +96,7 @@ export const createChangeQueue = ({ store, send, now, wait }: ChangeQueueDeps): 
         }
         const dueMs = nextDueMs()
         if (dueMs === null) return
-        await wait(Math.max(20, dueMs))
+        await Promise.race([wait(Math.max(20, dueMs)), new Promise<void>((awake) => (wakeUp = awake))])
       }
     } finally {
       isDraining = false
@@ -110,6 +112,7 @@ export const createChangeQueue = ({ store, send, now, wait }: ChangeQueueDeps): 
     push: (change) => {
       void store.put(change)
       set([...pending, change])
+      wakeUp()
       void drain()
     },
     takeBack: (id) => {
@@ -122,6 +125,7 @@ export const createChangeQueue = ({ store, send, now, wait }: ChangeQueueDeps): 
       if (!change?.refused) return
       const { refused: _, ...again } = change
       replace(again)
+      wakeUp()
       void drain()
     },
     wake: async () => {
