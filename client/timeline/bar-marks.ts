@@ -17,10 +17,10 @@ const lineRoomPx = 14
 const numberRoomPx = 30
 const beatRoomPx = 14
 
-/** Bars of the view and one more view on each side. Every fourth or eighth only, where single bars are too narrow. */
+/** Bars of the view and half of one more on each side. Every fourth or eighth only, where single bars are too narrow. */
 export const barMarks = (view: View, barMap: BarMap): BarMark[] => {
   const scale = scaleOf(view)
-  const bars = barMap.barsIn(visibleSpan(view, view.widthPx))
+  const bars = barMap.barsIn(visibleSpan(view, view.widthPx / 2))
   const [first, last] = [bars[0], bars.at(-1)]
   if (first === undefined || last === undefined || scale === 0) return []
   const whole = barMap.barsSpan(first, last)

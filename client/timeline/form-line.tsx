@@ -25,7 +25,7 @@ export interface FormLineProps {
 export const FormLine = memo(function FormLine(props: FormLineProps) {
   const { line, perLine, name, sections } = props
   return (
-    <div role="row" className="@container/line flex flex-wrap items-stretch sm:flex-nowrap">
+    <div role="row" className="flex flex-wrap items-stretch sm:flex-nowrap">
       {name ? (
         <span role="rowheader" className="w-full flex-none self-center text-sm text-pencil sm:w-[4.5rem]">
           {name}

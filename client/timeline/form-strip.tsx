@@ -1,5 +1,5 @@
 // oxlint-disable jsx-a11y/prefer-tag-over-role -- see form-line.tsx
-import { useMemo, useRef, useState, type KeyboardEvent, type PointerEvent } from 'react'
+import { useEffect, useMemo, useRef, useState, type KeyboardEvent, type PointerEvent } from 'react'
 import { useScope } from '@client/lib/scope'
 import type { Player } from '@client/transport/player'
 import type { BarMap } from '@shared/timing/bar-map'
@@ -61,6 +61,12 @@ export function FormStrip(props: FormStripProps) {
     },
     [player, barMap]
   )
+
+  const lastSeen = useRef(currentBar)
+  useEffect(() => {
+    if (box.current) keepInView(box.current, lastSeen.current, currentBar)
+    lastSeen.current = currentBar
+  }, [currentBar])
 
   const perLine = barsPerLine(columnsOf(rows), widthPx - (widthPx >= 560 ? labelPx : 0))
   const lines = useMemo(() => stripLines(rows, perLine), [rows, perLine])
@@ -156,7 +162,7 @@ export function FormStrip(props: FormStripProps) {
         onPointerUp={handleUp}
         onPointerCancel={() => setDragged(null)}
         onKeyDown={handleKey}
-        className="grid touch-pan-y gap-1.5"
+        className="relative grid max-h-[55dvh] touch-pan-y gap-1.5 overflow-y-auto pb-1 [contain:layout_paint]"
       >
         {isCyclic && !isWrapped ? <SectionNames sections={sections} columns={perLine} /> : null}
         {lines.map((line) => (
@@ -177,6 +183,16 @@ export function FormStrip(props: FormStripProps) {
       </div>
     </section>
   )
+}
+
+/** A long take's strip scrolls along with the line, unless somebody has scrolled elsewhere to look. */
+const keepInView = (box: HTMLElement, before: BarIndex, now: BarIndex): void => {
+  const cellOf = (bar: BarIndex) => box.querySelector<HTMLElement>(`[data-bar="${bar}"]`)?.getBoundingClientRect()
+  const frame = box.getBoundingClientRect()
+  const isSeen = (cell: DOMRect | undefined) => cell && cell.bottom > frame.top && cell.top < frame.bottom
+  const target = cellOf(now)
+  if (!target || !isSeen(cellOf(before))) return
+  if (target.top < frame.top || target.bottom > frame.bottom) box.scrollTop += target.top - frame.top - frame.height / 3
 }
 
 const noBars: ReadonlySet<BarIndex> = new Set()

@@ -23,7 +23,7 @@ export const SpanLane = memo(function SpanLane({ store, spans, selectedId, onSel
   const view = useWindowView(store)
   const scale = scaleOf(view)
   const placed = useMemo(() => stackSpans(spans, scale), [spans, scale])
-  const shown = visibleSpan(view, view.widthPx)
+  const shown = visibleSpan(view, view.widthPx / 2)
   return (
     <Moving store={store}>
       {placed

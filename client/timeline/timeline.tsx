@@ -221,7 +221,7 @@ export function Timeline(props: TimelineProps) {
           <LaneName height={soundHeightPx}>Sound</LaneName>
         </div>
         <div data-lanes className="relative min-w-0">
-          <div ref={lanes} className="relative overflow-hidden" style={{ paddingBottom: bobPx }}>
+          <div ref={lanes} className="relative overflow-hidden [contain:layout_paint]" style={{ paddingBottom: bobPx }}>
             {barMap ? (
               <div className="absolute inset-x-0" style={{ top: sectionPx, bottom: bobPx }}>
                 <BarLines store={store} marks={marks} sectionBars={sectionBars} />

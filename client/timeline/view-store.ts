@@ -30,8 +30,8 @@ const same = (a: View, b: View): boolean =>
   a.durationSec === b.durationSec && a.widthPx === b.widthPx && a.pxPerSec === b.pxPerSec && a.scrollPx === b.scrollPx
 
 /**
- * The view, but with the scroll rounded to half a view: components re-render when the window they draw (the view and
- * one more on each side) has to change, not on every scrolled pixel.
+ * The view, but with the scroll rounded to a quarter of a view: components re-render when the window they draw (the view
+ * and half of one more on each side) has to change, not on every scrolled pixel.
  */
 export const useWindowView = (store: ViewStore): View => {
   const key = useSyncExternalStore(store.subscribe, () => windowKey(store.get()))
@@ -39,7 +39,7 @@ export const useWindowView = (store: ViewStore): View => {
 }
 
 const windowKey = (view: View): string => {
-  const step = Math.max(1, Math.round(view.widthPx / 2))
+  const step = Math.max(1, Math.round(view.widthPx / 4))
   const scroll = clamp(Math.round(view.scrollPx / step) * step, 0, maxScroll(view))
   return `${view.durationSec}|${view.widthPx}|${view.pxPerSec}|${scroll}`
 }
