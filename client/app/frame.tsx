@@ -2,6 +2,7 @@
 import { useQueryClient } from '@tanstack/react-query'
 import { Outlet } from 'react-router-dom'
 import { meKey } from '@client/features/account/api'
+import { UploadsProvider } from '@client/features/uploads/provider'
 import { useScope } from '@client/lib/scope'
 import { closeSocket, roomSocket } from '@client/lib/socket'
 import { LiveLog } from '@client/ui/live-log'
@@ -24,7 +25,9 @@ export function Frame() {
   return (
     <LiveLog>
       <Toasts>
-        <Outlet />
+        <UploadsProvider>
+          <Outlet />
+        </UploadsProvider>
       </Toasts>
     </LiveLog>
   )

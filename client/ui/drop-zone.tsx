@@ -19,6 +19,8 @@ export interface DropZoneProps {
   primary?: boolean
   /** Files dropped anywhere in the window count too. */
   wholeWindow?: boolean
+  /** The heart of its screen: high enough to be aimed at from across a desktop. */
+  tall?: boolean
   onFiles: (files: File[]) => void
   children?: ReactNode
 }
@@ -27,7 +29,7 @@ const carriesFiles = (event: DragEvent) => event.dataTransfer?.types.includes('F
 
 export function DropZone(props: DropZoneProps) {
   const { title, says, pick = 'Choose a file', accept, multiple = false, disabled = false, onFiles, children } = props
-  const { primary = false, wholeWindow = false } = props
+  const { primary = false, wholeWindow = false, tall = false } = props
   const id = useId()
   const zone = useRef<HTMLDivElement>(null)
   const picker = useRef<HTMLInputElement>(null)
@@ -79,6 +81,7 @@ export function DropZone(props: DropZoneProps) {
       ref={zone}
       className={cx(
         'grid justify-items-start gap-2 rounded border-[1.5px] border-dashed bg-sheet px-5 py-6',
+        tall && 'min-h-[min(22rem,50dvh)] content-center sm:px-10',
         isOver ? 'border-ink bg-wash' : 'border-pencil'
       )}
     >
