@@ -1,6 +1,7 @@
 import { memo, useRef } from 'react'
 import WaveSurfer from 'wavesurfer.js'
 import { useScope } from '@client/lib/scope'
+import { styleNonce } from '@client/lib/style-nonce'
 import { useLatest } from '@client/lib/use-latest'
 import { readTokens, watchTokens } from '@client/ui/tokens'
 import type { Sec } from '@shared/units'
@@ -47,6 +48,7 @@ export const Waveform = memo(function Waveform({ store, durationSec, peaks, gain
         autoScroll: false,
         hideScrollbar: true,
         cursorWidth: 0,
+        cspNonce: styleNonce(),
         minPxPerSec: wantedPxPerSec(shown),
         renderFunction: (_peaks, ctx) => {
           const { canvas } = ctx
