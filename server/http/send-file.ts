@@ -5,7 +5,8 @@ import type { FileAnswer } from '@server/http/handlers'
 
 /** A name as RFC 6266 wants it: plain letters for old readers, the whole name percent-encoded. */
 export const contentDisposition = (name: string): string => {
-  const clean = name.replace(/[\p{Cc}\p{Cf}/\\]/gu, '').slice(0, 150) || 'recording'
+  // By characters, not code units: half a surrogate pair cannot be encoded.
+  const clean = [...name.replace(/[\p{Cc}\p{Cf}\p{Cs}/\\]/gu, '')].slice(0, 150).join('') || 'recording'
   const ascii = clean.replace(/[^\w .,()-]/g, '_')
   const encoded = encodeURIComponent(clean).replace(/['()*]/g, (c) => `%${c.charCodeAt(0).toString(16).toUpperCase()}`)
   return `attachment; filename="${ascii}"; filename*=UTF-8''${encoded}`

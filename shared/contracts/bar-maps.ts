@@ -10,5 +10,6 @@ export const barMapRoutes = documentRoutes({
   body: barMapDocument.body,
   operation: barMapDocument.operation,
   read: 'take:read',
-  write: 'take:edit-bars'
+  write: 'take:edit-bars',
+  whole: ['setAll']
 })

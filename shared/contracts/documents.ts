@@ -32,13 +32,18 @@ interface Input<P extends z.ZodType, B extends z.ZodType, O extends z.ZodType> {
   operation: O
   read: Permission
   write: Permission
+  /** Operations that go through the whole body: an edit holds one of them at most, for each costs as much as all of it. */
+  whole: readonly string[]
+  /** Characters of one edit's operations together, where reading them is work. */
+  maxChars?: number
 }
 
 export const documentRoutes = <P extends z.ZodType, B extends z.ZodType, O extends z.ZodType>(
   input: Input<P, B, O>
 ) => {
   const state = documentState(input.body)
-  const { params } = input
+  const { params, whole, maxChars = limits.jsonBytes } = input
+  const isWhole = (op: unknown): boolean => whole.includes(String((op as { kind?: unknown }).kind))
   return {
     get: defineRoute({
       method: 'GET',
@@ -58,7 +63,12 @@ export const documentRoutes = <P extends z.ZodType, B extends z.ZodType, O exten
         /** Made by the client; the same edit sent twice is applied once. */
         id: Uuid,
         baseRevision: z.number().int().min(0),
-        operations: z.array(input.operation).min(1).max(limits.operationsPerEdit)
+        operations: z
+          .array(input.operation)
+          .min(1)
+          .max(limits.operationsPerEdit)
+          .refine((all) => all.filter(isWhole).length <= 1, 'Change all of it in one edit at a time.')
+          .refine((all) => JSON.stringify(all).length <= maxChars, 'Send this in several edits.')
       }),
       response: state
     }),

@@ -4,6 +4,7 @@ import { documentRoutes } from '@shared/contracts/documents'
 import { defineRoute } from '@shared/contracts/route'
 import { limits } from '@shared/limits'
 import { chartDocument } from '@shared/music/chart-document'
+import { chartLimits } from '@shared/music/chart-schema'
 
 export const Tune = z.object({
   id: Uuid,
@@ -73,5 +74,8 @@ export const chartRoutes = documentRoutes({
   body: chartDocument.body,
   operation: chartDocument.operation,
   read: 'tune:read',
-  write: 'tune:edit'
+  write: 'tune:edit',
+  whole: ['replaceChart', 'setMeter'],
+  // A whole chart with its sections and order, and some more.
+  maxChars: 4 * chartLimits.text
 })
