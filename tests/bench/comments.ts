@@ -3,7 +3,7 @@ import { addressOf } from '@shared/contracts/route'
 import { type Comment, commentRoutes } from '@shared/contracts/comments'
 import { mustGet } from './get.ts'
 import { alone, compared, comparedAt, type Figure } from './report.ts'
-import type { Stage } from './stage.ts'
+import { spending, type Stage } from './stage.ts'
 import { inPairs } from './statistics.ts'
 
 const comments = 100
@@ -29,7 +29,9 @@ export const commentFigures = async (stage: Stage): Promise<Figure[]> => {
   const packed = () => mustGet(url, 200, { ...signedIn, 'Accept-Encoding': 'gzip, br' }).then(({ ms }) => ms)
   const packedPeer = () => mustGet(`${peerUrl}-packed`, 200, { 'Accept-Encoding': 'gzip, br' }).then(({ ms }) => ms)
   await inPairs(warmUp, plain, plainPeer)
+  const spent = await spending(real, bare)
   const plainMs = await inPairs(pairs, plain, plainPeer)
+  const cpuMs = await spent()
   await inPairs(warmUp, packed, packedPeer)
   const packedMs = await inPairs(pairs, packed, packedPeer)
 
@@ -43,6 +45,12 @@ export const commentFigures = async (stage: Stage): Promise<Figure[]> => {
   return [
     compared('p50', 'ms', plainMs, what),
     comparedAt(0.95, 'p95', 'ms', plainMs, what),
+    compared(
+      "the server's processor time a request",
+      'ms',
+      { ours: [cpuMs.ours / pairs], peer: [cpuMs.peer / pairs] },
+      `${what}; of the node process alone, which other load hardly moves`
+    ),
     compared('p50, packed', 'ms', packedMs, packedWhat),
     comparedAt(0.95, 'p95, packed', 'ms', packedMs, packedWhat),
     {

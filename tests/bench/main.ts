@@ -33,12 +33,23 @@ const names = args.filter((arg) => !arg.startsWith('--'))
 const rounds = Number(/^--rounds=(\d+)$/.exec(args.find((arg) => arg.startsWith('--')) ?? '')?.[1] ?? 3)
 const wanted = names.length > 0 ? names : Object.keys(benches)
 
+/** One that fails is said to have failed; the others are measured all the same. */
+const figuresOf = async (name: string, stage: Stage): Promise<Figure[]> => {
+  try {
+    return (await benches[name]?.(stage, rounds)) ?? []
+  } catch (error) {
+    say(`${name} failed: ${error instanceof Error ? (error.stack ?? error.message) : String(error)}`)
+    process.exitCode = 1
+    return []
+  }
+}
+
 const run = async (stage: Stage): Promise<Measured[]> => {
   const measured: Measured[] = []
   for (const name of wanted) {
     say(`${name} …`)
     const began = performance.now()
-    const figures = (await benches[name]?.(stage, rounds)) ?? []
+    const figures = await figuresOf(name, stage)
     const load = Math.round((loadavg()[0] ?? 0) * 100) / 100
     measured.push({ bench: name, seconds: Math.round((performance.now() - began) / 1000), load, figures })
   }

@@ -43,8 +43,12 @@ export interface Running {
   child: ChildProcess
   /** Sends a question and waits for what comes back. */
   ask<T>(question: unknown): Promise<T>
+  /** Processor time it has taken so far, ms. */
+  cpuMs(): Promise<number>
   stop(): Promise<void>
 }
+
+const howMuchCpu = 'cpu'
 
 /** A TypeScript file of this folder in a process of its own, which talks by messages and ends with us. */
 export const start = (file: string, given: unknown): Running => {
@@ -60,13 +64,15 @@ export const start = (file: string, given: unknown): Running => {
     const [message] = (await Promise.race([once(child, 'message'), ended])) as unknown[]
     return message
   }
+  const ask = async <T>(question: unknown): Promise<T> => {
+    const answered = answer()
+    child.send(question as object)
+    return (await answered) as T
+  }
   return {
     child,
-    ask: async <T>(question: unknown): Promise<T> => {
-      const answered = answer()
-      child.send(question as object)
-      return (await answered) as T
-    },
+    ask,
+    cpuMs: () => ask<number>(howMuchCpu),
     stop: async () => {
       if (child.connected) child.disconnect()
       await gone
@@ -81,8 +87,10 @@ export const serveQuestions = <Given, Question>(
 ): void => {
   const given = JSON.parse(process.argv[2] ?? '{}') as Given
   process.on('message', (question) => {
-    Promise.resolve(answer(question as Question, given)).then(
-      (said) => process.send?.(said ?? null),
+    const { user, system } = process.cpuUsage()
+    const said = question === howMuchCpu ? (user + system) / 1000 : answer(question as Question, given)
+    Promise.resolve(said).then(
+      (reply) => process.send?.(reply ?? null),
       (error: unknown) => {
         process.stderr.write(`${error instanceof Error ? (error.stack ?? error.message) : String(error)}\n`)
         process.exit(1)

@@ -5,7 +5,7 @@ import { get, mustGet } from './get.ts'
 import { alone, compared, comparedAt, type Figure } from './report.ts'
 import { join } from 'node:path'
 import { renditionFile } from '@server/media/commands'
-import type { Stage } from './stage.ts'
+import { spending, type Stage } from './stage.ts'
 import { inPairs } from './statistics.ts'
 
 const sizes = { '64 kB': 64 * 1024, '1 MB': 1024 ** 2 }
@@ -39,6 +39,7 @@ export const rangeFigures = async (stage: Stage): Promise<Figure[]> => {
       (n) => peer(n).then(({ ms }) => ms)
     )
     const heads = { ours: [] as number[], peer: [] as number[] }
+    const spent = await spending(real, bare)
     const whole = await inPairs(
       pairs,
       async (n) => {
@@ -52,6 +53,7 @@ export const rangeFigures = async (stage: Stage): Promise<Figure[]> => {
         return ms
       }
     )
+    const cpuMs = await spent()
     const together = async (one: (n: number) => Promise<unknown>, round: number): Promise<number> => {
       const began = performance.now()
       await Promise.all(Array.from({ length: atOnce }, (_, i) => one(round * atOnce + i)))
@@ -67,6 +69,12 @@ export const rangeFigures = async (stage: Stage): Promise<Figure[]> => {
       compared(`${name}, p50`, 'ms', whole, how),
       comparedAt(0.95, `${name}, p95`, 'ms', whole, how),
       compared(`${name}, to the first byte`, 'ms', heads, how),
+      compared(
+        `${name}, the server's processor time`,
+        'ms',
+        { ours: [cpuMs.ours / pairs], peer: [cpuMs.peer / pairs] },
+        `${how}; of the node process alone, which other load hardly moves`
+      ),
       compared(`${name}, ${atOnce} at once`, 'MB/s', flow, `${how}; more is better`)
     )
   }

@@ -15,13 +15,19 @@ const once = <T>(make: () => Promise<T>): (() => Promise<T>) => {
   return () => (made ??= make())
 }
 
-export interface Real extends AppPlace {
+export interface Real extends AppPlace, Pick<Running, 'cpuMs'> {
   ask<T>(question: AppQuestion): Promise<T>
 }
-export interface Bare {
+export interface Bare extends Pick<Running, 'cpuMs'> {
   url: string
   ask<T>(question: BareQuestion): Promise<T>
 }
+/** Processor time that both servers take from now on, ms. */
+export const spending = async (real: Real, bare: Bare): Promise<() => Promise<{ ours: number; peer: number }>> => {
+  const [ours, peer] = [await real.cpuMs(), await bare.cpuMs()]
+  return async () => ({ ours: (await real.cpuMs()) - ours, peer: (await bare.cpuMs()) - peer })
+}
+
 export interface Stage {
   room(): Promise<{ folder: string }>
   real(): Promise<Real>
@@ -47,11 +53,11 @@ export const createStage = (build: boolean): Stage => {
   })
   const real = once(async (): Promise<Real> => {
     const running = begin('app-process.ts', { storageDir: (await room()).folder })
-    return { ...(await running.ask<AppPlace>({ ask: 'place' })), ask: running.ask }
+    return { ...(await running.ask<AppPlace>({ ask: 'place' })), ask: running.ask, cpuMs: running.cpuMs }
   })
   const bare = once(async (): Promise<Bare> => {
     const running = begin('bare-process.ts', {})
-    return { url: await running.ask<string>({ ask: 'place' }), ask: running.ask }
+    return { url: await running.ask<string>({ ask: 'place' }), ask: running.ask, cpuMs: running.cpuMs }
   })
   return {
     room,
