@@ -53,7 +53,7 @@ export type ProblemBody = z.infer<typeof ProblemBody>
 export const problemType = (code: ProblemCode): string => `/problems/${code}`
 export const codeOfType = (type: string): ProblemCode | null => {
   const code = type.replace(/^\/problems\//, '')
-  return code in problems ? (code as ProblemCode) : null
+  return Object.hasOwn(problems, code) ? (code as ProblemCode) : null
 }
 
 interface ProblemExtra {
