@@ -1,5 +1,6 @@
 import { Link } from 'react-router-dom'
 import type { Me } from '@shared/contracts/account'
+import { ChordWriting } from '@client/app/account/chord-writing'
 import { AccountMenu } from '@client/features/account/account-menu'
 import { useMe } from '@client/features/account/api'
 import { NameForm } from '@client/features/account/name-form'
@@ -47,6 +48,9 @@ function Account({ me }: { me: Me }) {
       </PageSection>
       <PageSection title="Look">
         <ThemeChoice />
+      </PageSection>
+      <PageSection title="How chords are written">
+        <ChordWriting />
       </PageSection>
       <PageSection title="Tap lag">
         <TapLag me={me} />

@@ -7,7 +7,7 @@ import { TakeList } from '@client/features/groups/take-list'
 import { TuneList } from '@client/features/groups/tune-list'
 import { UnheardTakes } from '@client/features/groups/unheard-takes'
 import { useGroup } from '@client/features/groups/api'
-import { useGroupNews } from '@client/features/groups/use-group-news'
+import { useGroupFollow } from '@client/app/desk/use-group-follow'
 import { paths } from '@client/lib/paths'
 import { AppShell } from '@client/ui/app-shell'
 import { buttonClass } from '@client/ui/button'
@@ -16,7 +16,7 @@ import { Page } from '@client/ui/page'
 export function GroupRoute() {
   const { groupId = '' } = useParams()
   const { data: group } = useGroup(groupId)
-  useGroupNews(groupId)
+  useGroupFollow(groupId)
   return (
     <AppShell crumbs={group ? [{ label: group.name }] : []} right={<AccountMenu />}>
       <GroupGate groupId={groupId}>{(known) => <GroupPage key={known.id} group={known} />}</GroupGate>

@@ -13,7 +13,6 @@ import { Page } from '@client/ui/page'
 export function InvitationRoute() {
   const me = useMe()
   const token = useLocation().hash.slice(1)
-  const isSettled = me.data !== undefined || me.error !== null
   return (
     <AppShell right={<AccountMenu />}>
       <Page title="Invitation" width="narrow">
@@ -21,7 +20,7 @@ export function InvitationRoute() {
           {(invited) =>
             me.data && !me.error ? (
               <Joining invited={invited} token={token} me={me.data} />
-            ) : isSettled ? (
+            ) : me.isFetched ? (
               <Arriving token={token} />
             ) : null
           }

@@ -8,7 +8,7 @@ import { GroupSettings } from '@client/features/groups/group-settings'
 import { InvitationsSection } from '@client/features/groups/invitations-section'
 import { LinksSection } from '@client/features/groups/links-section'
 import { Roster } from '@client/features/groups/roster'
-import { useGroupNews } from '@client/features/groups/use-group-news'
+import { useGroupFollow } from '@client/app/desk/use-group-follow'
 import { paths } from '@client/lib/paths'
 import { AppShell } from '@client/ui/app-shell'
 import { Button } from '@client/ui/button'
@@ -19,7 +19,7 @@ export function PeopleRoute() {
   const { groupId = '' } = useParams()
   const { data: group } = useGroup(groupId)
   const { data: me } = useMe()
-  useGroupNews(groupId)
+  useGroupFollow(groupId)
   return (
     <AppShell
       crumbs={group ? [{ label: group.name, to: paths.group(group.id) }, { label: 'People' }] : []}

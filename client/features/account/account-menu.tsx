@@ -8,9 +8,9 @@ import { useAskingSignOut } from './use-sign-out'
 
 /** At the right of the bar on every page: who is signed in, with the ways to the account, to help and out. */
 export function AccountMenu() {
-  const { data: me, error } = useMe()
+  const { data: me, error, isFetched } = useMe()
   if (me && !error) return <MenuOf me={me} />
-  if (error?.code !== 'sign-in-needed') return null
+  if (!isFetched || (error && error.code !== 'sign-in-needed')) return null
   return (
     <>
       <Link to={paths.help()} className="inline-flex min-h-9 items-center">

@@ -33,9 +33,11 @@ export function GroupName({ proposed, value, onChange }: GroupNameProps) {
           <span className="min-w-0 break-words">
             Your group will be called <strong className="font-semibold">{proposed}</strong>.
           </span>
-          <Button look="quiet" onClick={() => onChange(proposed)}>
-            Name it otherwise
-          </Button>
+          <span className="-ml-3 sm:ml-0">
+            <Button look="quiet" onClick={() => onChange(proposed)}>
+              Name it otherwise
+            </Button>
+          </span>
         </p>
       )}
     </div>

@@ -60,7 +60,7 @@ function InvitationRow({ invitation, group, meId }: { invitation: Invitation; gr
   const whom = invitation.note || `a ${roleWords[invitation.role]}`
   return (
     <li className="grid gap-2 border-b border-rule py-1.5">
-      <div className="flex min-h-9 flex-wrap items-center justify-between gap-x-4 gap-y-1">
+      <div className="flex min-h-9 items-center justify-between gap-4">
         <div className="min-w-0">
           <p className="break-words">
             {invitation.note ? `${invitation.note} · ` : ''}
@@ -73,14 +73,16 @@ function InvitationRow({ invitation, group, meId }: { invitation: Invitation; gr
           </p>
         </div>
         {invitation.state === 'open' && allows('invitation:revoke', held) ? (
-          <Button
-            look="quiet"
-            busy={revoke.isPending}
-            aria-label={`Take back the invitation for ${whom}`}
-            onClick={() => revoke.mutate({ params: { invitationId: invitation.id } })}
-          >
-            Take back
-          </Button>
+          <span className="flex-none">
+            <Button
+              look="quiet"
+              busy={revoke.isPending}
+              aria-label={`Take back the invitation for ${whom}`}
+              onClick={() => revoke.mutate({ params: { invitationId: invitation.id } })}
+            >
+              Take back
+            </Button>
+          </span>
         ) : null}
       </div>
       {revoke.error ? <Notice kind="fault">{revoke.error.message}</Notice> : null}

@@ -66,11 +66,12 @@ function LinkRow({ link, group, meId }: { link: TeacherLink; group: Group; meId:
   const held = new Set<Relation>(isSide(link, meId) ? [group.role, 'author'] : [group.role])
   const params = { linkId: link.id }
   const isWaitingForMe = isSide(link, meId) && isOpenFor(link, meId)
+  const ending = isWaitingForMe ? 'Decline' : isAgreed(link) || !isSide(link, meId) ? 'End' : 'Take back'
   const handleEnd = (): void => end.mutate({ params }, { onSuccess: () => setAsking(false) })
   const problem = agree.error ?? (isAsking ? null : end.error)
   return (
     <li className="grid gap-2 border-b border-rule py-1.5">
-      <div className="flex min-h-9 flex-wrap items-center justify-between gap-x-4 gap-y-1">
+      <div className="flex min-h-9 items-center justify-between gap-4">
         <div className="min-w-0">
           <p className="break-words">{words(link, meId)}</p>
           {isWaitingForMe ? (
@@ -83,7 +84,7 @@ function LinkRow({ link, group, meId }: { link: TeacherLink; group: Group; meId:
             <p className="text-sm text-pencil">not agreed yet</p>
           )}
         </div>
-        <div className="flex flex-wrap gap-2">
+        <div className="flex flex-none flex-wrap justify-end gap-x-2 gap-y-1">
           {isWaitingForMe && allows('link:agree', held) ? (
             <Button busy={agree.isPending} onClick={() => agree.mutate({ params })}>
               Agree
@@ -94,9 +95,9 @@ function LinkRow({ link, group, meId }: { link: TeacherLink; group: Group; meId:
               look="quiet"
               busy={end.isPending}
               onClick={() => (isAgreed(link) ? setAsking(true) : handleEnd())}
-              aria-label={`${isAgreed(link) ? 'End' : isWaitingForMe ? 'Decline' : 'Take back'}: ${words(link, meId)}`}
+              aria-label={`${ending}: ${words(link, meId)}`}
             >
-              {isAgreed(link) ? 'End' : isWaitingForMe ? 'Decline' : 'Take back'}
+              {ending}
             </Button>
           ) : null}
         </div>

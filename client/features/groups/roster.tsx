@@ -79,7 +79,7 @@ function Row({ person, isMe, items }: { person: GroupPerson; isMe: boolean; item
           {isMe ? <span className="text-pencil"> (you)</span> : null}
         </p>
         <p className="text-sm text-pencil">
-          {roleWords[person.role]} · here since <RelativeTime at={person.joinedAt} notFocusable />
+          {roleWords[person.role]} · joined <RelativeTime at={person.joinedAt} notFocusable />
           {person.isMinor ? <Minor hasConsent={person.hasGuardianConsent} /> : null}
         </p>
       </div>

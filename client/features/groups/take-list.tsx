@@ -10,7 +10,7 @@ import { Notice } from '@client/ui/notice'
 import { PageSection } from '@client/ui/page'
 import { RelativeTime } from '@client/ui/relative-time'
 import { useGroupTakes, useGroupTunes } from './api'
-import { lengthWords } from './length-words'
+import { counted, lengthWords } from './list-words'
 
 export interface TakeListProps {
   groupId: string
@@ -88,25 +88,24 @@ function TakeRow({ take, tune }: { take: Take; tune: string | undefined }) {
           </span>
         )}
       </div>
-      <p className="flex flex-wrap items-center gap-x-2 gap-y-0.5 text-sm text-pencil">
+      <div className="flex items-start gap-2 text-sm text-pencil">
         <Initials id={take.uploader.id} name={take.uploader.name} size={20} decorative />
-        <span className="min-w-0 break-words">{take.uploader.name}</span>
-        {tune ? <span className="min-w-0 break-words">· {tune}</span> : null}
-        <span>
-          · <RelativeTime at={take.createdAt} notFocusable />
-        </span>
-        <TakeState take={take} />
-      </p>
+        <p className="min-w-0 break-words">
+          {take.uploader.name}
+          {tune ? ` · ${tune}` : null}
+          {' · '}
+          <RelativeTime at={take.createdAt} notFocusable />
+          <TakeState take={take} />
+        </p>
+      </div>
     </li>
   )
 }
 
 function TakeState({ take }: { take: Take }) {
-  if (take.state === 'failed') return <span className="text-fault">· ! could not be read</span>
-  if (take.state === 'waiting') return <span>· waiting to be read</span>
-  if (take.state === 'working') return <span>· being read, {Math.floor(take.progress * 100)} %</span>
-  if (take.openCount > 0) return <span className="text-claim">· {take.openCount} open</span>
-  if (take.commentCount > 0)
-    return <span>· {take.commentCount === 1 ? '1 comment' : `${take.commentCount} comments`}</span>
-  return null
+  if (take.state === 'failed') return <span className="text-fault"> · ! could not be read</span>
+  if (take.state === 'waiting') return ' · waiting to be read'
+  if (take.state === 'working') return ` · being read, ${Math.floor(take.progress * 100)} %`
+  if (take.openCount > 0) return <span className="text-claim"> · {take.openCount} open</span>
+  return take.commentCount > 0 ? ` · ${counted(take.commentCount, 'comment')}` : null
 }

@@ -8,14 +8,13 @@ import { Empty } from '@client/ui/empty'
 import { Notice } from '@client/ui/notice'
 import { PageSection } from '@client/ui/page'
 import { useGroupTunes } from './api'
+import { counted } from './list-words'
 
 export interface TuneListProps {
   groupId: string
   /** The button that adds a tune, for those who may. */
   action?: ReactNode
 }
-
-const counted = (count: number, one: string): string => `${count} ${one}${count === 1 ? '' : 's'}`
 
 /** Key, meter where it is not 4/4, bars and takes, as far as they are known. */
 const facts = ({ chart, takeCount }: Tune): string => {

@@ -6,7 +6,7 @@ import { PageSection } from '@client/ui/page'
 import { RelativeTime } from '@client/ui/relative-time'
 import { useToast } from '@client/ui/toasts'
 import { useDeleteTake, useGroupTakes } from './api'
-import { lengthWords } from './length-words'
+import { lengthWords } from './list-words'
 import { SureDialog } from './sure-dialog'
 
 /** For owners: takes of the group that were not shared with them. They see that these are there, and can take one down. */
