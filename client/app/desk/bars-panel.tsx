@@ -34,7 +34,9 @@ export function BarsPanel({ me, material, player, controls, selection, onClose }
   const [bar, setBar] = useState<BarIndex | null>(null)
   const update = useUpdateMe()
   const box = useRef<HTMLDivElement>(null)
-  useEffect(() => box.current?.scrollIntoView({ block: 'nearest' }), [])
+  useEffect(() => {
+    void box.current?.scrollIntoView({ block: 'nearest' })
+  }, [])
   return (
     <div ref={box}>
       <PanelBoundary name="the bars">

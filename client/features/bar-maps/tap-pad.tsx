@@ -20,7 +20,9 @@ interface TapPadProps {
 /** Wide enough for a thumb. Counts when the hand comes down, not when it leaves. */
 export function TapPad({ label, onTap }: TapPadProps) {
   const pad = useRef<HTMLButtonElement>(null)
-  useEffect(() => pad.current?.focus(), [])
+  useEffect(() => {
+    pad.current?.focus()
+  }, [])
   return (
     <button
       ref={pad}
