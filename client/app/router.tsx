@@ -1,6 +1,7 @@
 // Which screen stands at which address. Screens come in files of their own, so that the first one is light.
 import { createBrowserRouter, type RouteObject } from 'react-router-dom'
 import { Frame } from '@client/app/frame'
+import { Opening } from '@client/app/opening'
 import { RouteFault } from '@client/app/route-fault'
 import { SignedIn } from '@client/app/signed-in'
 import { routes } from '@client/lib/paths'
@@ -52,4 +53,4 @@ const screens: RouteObject[] = [
 ]
 
 export const createRouter = () =>
-  createBrowserRouter([{ element: <Frame />, errorElement: <RouteFault />, children: screens }])
+  createBrowserRouter([{ element: <Frame />, errorElement: <RouteFault />, hydrateFallbackElement: <Opening />, children: screens }])
