@@ -53,4 +53,6 @@ const screens: RouteObject[] = [
 ]
 
 export const createRouter = () =>
-  createBrowserRouter([{ element: <Frame />, errorElement: <RouteFault />, hydrateFallbackElement: <Opening />, children: screens }])
+  createBrowserRouter([
+    { element: <Frame />, errorElement: <RouteFault />, hydrateFallbackElement: <Opening />, children: screens }
+  ])
