@@ -42,6 +42,8 @@ export const createKeepTogether = ({ player, serverNow, timeout, localNow, onBlo
   /** How late this browser starts and jumps, learned: seconds of take at full speed. */
   let lagSec = 0.04
   let isJudgingLag = false
+  /** False while stepped away: the shared place goes on, the player is one's own. */
+  let isFollowing = true
 
   const wantedNow = (): { positionSec: Sec; playing: boolean } | null => {
     const now = serverNow()
@@ -112,36 +114,39 @@ export const createKeepTogether = ({ player, serverNow, timeout, localNow, onBlo
     cancel = timeout(tick, lookEveryMs)
   }
 
+  /** A new state of the shared transport. */
+  const apply = (state: SharedPlayback): void => {
+    const before = shared
+    shared = state
+    if (!isFollowing) return
+    player.setRate(state.rate)
+    if (!sameLoop()) player.setLoop(state.loop ? { span: state.loop } : null)
+    const now = serverNow()
+    if (now === null) return
+    if (!state.playing) {
+      player.pause()
+      if (Math.abs(player.heardPosition - state.positionSec) > 0.005) player.seek(state.positionSec)
+      player.setTrim(1)
+    } else if (before?.playing && player.state === 'playing') {
+      // Playing on: only a real jump is made at once, the rest is bent into place.
+      const wanted = sessionPosition(state, now)
+      const gap = gapSec(player.heardPosition, wanted.positionSec, state.loop)
+      if (Math.abs(gap) > jumpBeyondSec && now >= state.atServerMs) goTo(wanted.positionSec)
+    } else if (now < state.atServerMs) {
+      player.seek(state.positionSec)
+      const early = Math.max(0, state.atServerMs - now - lagSec * 1000)
+      cancel()
+      cancel = timeout(() => {
+        start()
+        tick()
+      }, early)
+      return
+    }
+    tick()
+  }
+
   return {
-    /** A new state of the shared transport. */
-    apply: (state: SharedPlayback): void => {
-      const before = shared
-      shared = state
-      player.setRate(state.rate)
-      if (!sameLoop()) player.setLoop(state.loop ? { span: state.loop } : null)
-      const now = serverNow()
-      if (now === null) return
-      if (!state.playing) {
-        player.pause()
-        if (Math.abs(player.heardPosition - state.positionSec) > 0.005) player.seek(state.positionSec)
-        player.setTrim(1)
-      } else if (before?.playing && player.state === 'playing') {
-        // Playing on: only a real jump is made at once, the rest is bent into place.
-        const wanted = sessionPosition(state, now)
-        const gap = gapSec(player.heardPosition, wanted.positionSec, state.loop)
-        if (Math.abs(gap) > jumpBeyondSec && now >= state.atServerMs) goTo(wanted.positionSec)
-      } else if (now < state.atServerMs) {
-        player.seek(state.positionSec)
-        const early = Math.max(0, state.atServerMs - now - lagSec * 1000)
-        cancel()
-        cancel = timeout(() => {
-          start()
-          tick()
-        }, early)
-        return
-      }
-      tick()
-    },
+    apply,
     wantedSec: (): Sec | null => wantedNow()?.positionSec ?? null,
     /** How far the player is from the shared playhead right now, seconds; null while nothing is shared. */
     gap: (): Sec | null => {
@@ -152,10 +157,16 @@ export const createKeepTogether = ({ player, serverNow, timeout, localNow, onBlo
       // The element's loop comes round a little late every time, and needs a moment to be believed again.
       settledAt = Math.max(settledAt, localNow() + 120)
     },
-    stop: (): void => {
+    /** Lets go of the player and goes on knowing the shared place. */
+    letGo: (): void => {
+      isFollowing = false
       cancel()
-      shared = null
       player.setTrim(1)
+    },
+    /** Takes the player back to the shared place. */
+    follow: (state: SharedPlayback): void => {
+      isFollowing = true
+      apply(state)
     }
   }
 }

@@ -55,13 +55,13 @@ export const createListening = ({ player, sessionId, meId, onState, onOver }: De
     onState(state)
   }
   const follow = (transport: TransportState): void => {
-    if (!state || state.isAway) return
+    if (!state) return
     together.apply({ ...transport, durationSec: player.durationSec })
   }
   const end = (reason: string): void => {
     if (isOver) return
     isOver = true
-    together.stop()
+    together.letGo()
     player.pause()
     scope.dispose()
     onState(null)
@@ -89,6 +89,7 @@ export const createListening = ({ player, sessionId, meId, onState, onOver }: De
       const wasAway = state?.isAway ?? session.people.find((one) => one.id === meId)?.isAway ?? false
       state = { session, isAway: wasAway, needsTap: state?.needsTap ?? false, isConnected: true, pointers: new Map() }
       onState(state)
+      if (wasAway) together.letGo()
       follow(session.transport)
     } catch (error) {
       if (!(error instanceof ApiProblem)) throw error
@@ -165,8 +166,8 @@ export const createListening = ({ player, sessionId, meId, onState, onOver }: De
     },
     step: async (isAway: boolean): Promise<void> => {
       update({ isAway })
-      if (isAway) together.stop()
-      else if (state) follow(state.session.transport)
+      if (isAway) together.letGo()
+      else if (state) together.follow({ ...state.session.transport, durationSec: player.durationSec })
       await ask('session:step', { sessionId, isAway })
     },
     lead: async (leaderId: string): Promise<void> => {
@@ -198,7 +199,7 @@ export const createListening = ({ player, sessionId, meId, onState, onOver }: De
     leave: (): void => {
       if (isOver) return
       isOver = true
-      together.stop()
+      together.letGo()
       if (socket.connected) void ask('session:leave', { sessionId }).catch(() => undefined)
       scope.dispose()
       onState(null)

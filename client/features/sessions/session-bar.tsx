@@ -1,6 +1,8 @@
 // At the right of the desk's bar: who leads, who is here, stepping away and back, leaving.
 import { Button } from '@client/ui/button'
 import { Initials } from '@client/ui/initials'
+import { VisuallyHidden } from '@client/ui/visually-hidden'
+import { VisuallyHidden } from '@client/ui/visually-hidden'
 import { Menu, type MenuItem } from '@client/ui/menu'
 import type { DeskSession } from '@client/features/sessions/use-session'
 
@@ -37,11 +39,8 @@ export function SessionBar({ session, meId, onEnd }: SessionBarProps) {
       <ul aria-label="Here now" className="flex items-center gap-1">
         {here.slice(0, mostShown).map((one) => (
           <li key={one.id} className={one.isAway ? 'opacity-60' : undefined}>
-            <Initials
-              id={one.id}
-              name={one.isAway ? `${one.name}, away` : one.name}
-              leads={one.id === state.session.leaderId}
-            />
+            <Initials id={one.id} name={one.name} leads={one.id === state.session.leaderId} />
+            {one.isAway ? <VisuallyHidden>has stepped away</VisuallyHidden> : null}
           </li>
         ))}
         {here.length > mostShown ? <li className="text-sm text-pencil">and {here.length - mostShown} more</li> : null}

@@ -144,6 +144,21 @@ describe('keeping together', () => {
     expect(worst).toBeLessThan(0.1)
   })
 
+  it('goes on knowing the shared place while stepped away, and comes back to it', async () => {
+    const { together, run, player } = simulate(30)
+    together.apply(playing())
+    await run(2000)
+    together.letGo()
+    player.pause()
+    player.seek(200)
+    await run(3000)
+    expect(together.wantedSec()).toBeCloseTo(15, 1)
+    expect(player.heardPosition).toBe(200)
+    together.follow(playing())
+    await run(2500)
+    expect(Math.abs(together.gap() ?? 9)).toBeLessThan(0.05)
+  })
+
   it('stops where the leader stopped', async () => {
     const { together, run, player } = simulate(30)
     together.apply(playing())
