@@ -1,5 +1,6 @@
 // What each socket event does: rooms and broadcasts here, rules in the services.
 import type { Session } from '@shared/contracts/sessions'
+import { problem } from '@shared/errors/problems'
 import type { Actor } from '@server/http/handlers'
 import type { Dispatch } from '@server/realtime/dispatch'
 import type { Presence } from '@server/realtime/presence'
@@ -62,6 +63,8 @@ export const createEventHandlers = ({ io, sessions, dispatch, presence, now }: D
       return transport
     },
     'pointer:show': async ({ socket, actor, payload }) => {
+      if (!socket.rooms.has(sessionRoom(payload.sessionId)))
+        throw problem('not-ready', { detail: 'Join the session first.' })
       socket.to(sessionRoom(payload.sessionId)).volatile.emit('pointer:shown', { ...payload, personId: actor.id })
       return {}
     }

@@ -105,7 +105,12 @@ describe('GET /api/takes/:takeId/audio', () => {
     const tag = (await get()).get('ETag') ?? ''
     for (const key of ['stranger', 'sten', 'anonymous'] as const)
       for (const part of ['audio', 'original', 'peaks', 'pieces', 'pieces/0'])
-        for (const headers of [{}, { Range: 'bytes=0-1' }, { Range: 'bytes=999999999-' }, { 'If-None-Match': tag }]) {
+        for (const headers of [
+          {},
+          { Range: 'bytes=0-1' },
+          { Range: 'bytes=999999999-' },
+          { 'If-None-Match': tag }
+        ] as Record<string, string>[]) {
           const { status } = await get(headers, part, await app.as(key))
           expect([key, part, status]).toEqual([key, part, key === 'anonymous' ? 401 : 404])
         }

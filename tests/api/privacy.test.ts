@@ -192,12 +192,11 @@ describe('a removed person (19, V15.4.2)', () => {
     const takeId = await buildTake(app, { groupId, by: 'ines' })
     const [mara, tomas] = [await app.as('mara'), await app.as('tomas')]
     const statuses = new Set<number>()
-    let isRemoved = false
-    let isOver = false
+    const at = { isRemoved: false, isOver: false }
     const after: number[] = []
     const writer = async () => {
-      while (!isOver) {
-        const begun = isRemoved
+      while (!at.isOver) {
+        const begun = at.isRemoved
         const { status } = await callRoute(tomas, commentRoutes.create, { params: { takeId }, body: comment() })
         statuses.add(status)
         if (begun) after.push(status)
@@ -206,17 +205,17 @@ describe('a removed person (19, V15.4.2)', () => {
     const writers = [writer(), writer(), writer(), writer()]
     await new Promise((some) => setTimeout(some, 120))
     await must(mara, groupRoutes.removePerson, { params: { groupId, userId: idOf('tomas') } })
-    isRemoved = true
-    const [at] = (await app.db('comments').where({ take_id: takeId }).count('id as count')) as unknown as {
+    at.isRemoved = true
+    const [before] = (await app.db('comments').where({ take_id: takeId }).count('id as count')) as unknown as {
       count: number
     }[]
     await new Promise((some) => setTimeout(some, 120))
-    isOver = true
+    at.isOver = true
     await Promise.all(writers)
     const [end] = (await app.db('comments').where({ take_id: takeId }).count('id as count')) as unknown as {
       count: number
     }[]
-    expect(end?.count).toBe(at?.count)
+    expect(end?.count).toBe(before?.count)
     expect([...statuses].filter((status) => status !== 201 && status !== 404)).toEqual([])
     expect(after.length).toBeGreaterThan(0)
     expect(new Set(after)).toEqual(new Set([404]))

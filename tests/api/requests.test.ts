@@ -42,7 +42,8 @@ const raw = (target: string, headers: Record<string, string> = {}): Promise<{ st
   })
 
 describe('requests from other sites (20, V3.5.1-V3.5.3)', () => {
-  const changing = allRoutes().filter(({ def }) => def.method !== 'GET')
+  const routes = allRoutes()
+  const changing = routes.filter((route) => route.def.method !== 'GET')
   it.each(changing.map(({ name, def }) => ({ name, def })))(
     'are refused by $name, with a foreign or no Origin',
     async ({ def }) => {
@@ -80,7 +81,8 @@ describe('requests from other sites (20, V3.5.1-V3.5.3)', () => {
   it('change nothing by GET or HEAD', async () => {
     const version = async () => (await app.db('groups').where({ id: demoGroup.id }).first('last_seq'))?.last_seq
     const before = await version()
-    for (const { def } of allRoutes().filter(({ def }) => def.method === 'GET' && !def.path.includes('*')))
+    const reading = routes.filter((route) => route.def.method === 'GET' && !route.def.path.includes('*'))
+    for (const { def } of reading)
       for (const method of ['get', 'head'] as const) {
         const target = addressOf(def, { params: { groupId: demoGroup.id, takeId, index: '0' }, query: { after: 0 } })
         expect([target, (await ines.send(method, target)).status < 500]).toEqual([target, true])
@@ -128,9 +130,8 @@ describe('answers', () => {
   })
 
   it('are kept by nobody where they are personal (43, V14.3.2)', async () => {
-    for (const { def } of allRoutes().filter(
-      ({ def }) => def.method === 'GET' && def.kind === 'json' && def.path.startsWith('/api')
-    )) {
+    const personal = allRoutes().filter((route) => route.def.kind === 'json' && route.def.path.startsWith('/api'))
+    for (const { def } of personal.filter((route) => route.def.method === 'GET')) {
       const target = addressOf(def, { params: { groupId: demoGroup.id, takeId }, query: { after: 0 } })
       expect([target, (await ines.send('get', target)).get('Cache-Control')]).toEqual([target, 'no-store'])
     }
