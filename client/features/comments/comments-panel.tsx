@@ -1,4 +1,4 @@
-import { useEffect, useMemo, useRef, useState, type KeyboardEvent } from 'react'
+import { memo, useEffect, useMemo, useRef, useState, type KeyboardEvent } from 'react'
 import type { CommentKind } from '@shared/contracts/comments'
 import type { PlaceWords } from '@shared/timing/place-words'
 import type { Span } from '@shared/timing/types'
@@ -13,6 +13,7 @@ import { CommentArticle, type CommentArticleProps, type CommentHands } from './c
 import type { SpanEdge } from './move-row'
 import { shortNames } from './short-names'
 import { SmallButton } from './small-button'
+import { useGrowing } from './use-growing'
 import { WriteBox } from './write-box'
 
 export interface CommentsPanelProps {
@@ -45,6 +46,7 @@ export function CommentsPanel(props: CommentsPanelProps) {
   const latest = useLatest(props)
   const openCount = useMemo(() => comments.filter(({ isOpen }) => isOpen).length, [comments])
   const shown = filter === 'open' ? comments.filter(({ isOpen }) => isOpen) : comments
+  const drawn = useGrowing(shown.length, selectedId ? shown.findIndex(({ id }) => id === selectedId) + 1 : 0)
 
   const people = comments.flatMap(({ author, settledBy, replies }) => [
     author,
@@ -116,11 +118,11 @@ export function CommentsPanel(props: CommentsPanelProps) {
         ref={feed}
         role="feed"
         aria-label="Comments"
-        aria-busy={said.isLoading}
+        aria-busy={said.isLoading || drawn < shown.length}
         onKeyDown={handleKey}
         className="order-2 min-h-0 flex-1 lg:order-none lg:overflow-y-auto"
       >
-        {shown.map((comment, index) => (
+        {shown.slice(0, drawn).map((comment, index) => (
           <PlacedArticle
             key={comment.id}
             comment={comment}
@@ -171,7 +173,7 @@ function FilterButton({ isOn, onClick, children }: { isOn: boolean; onClick: () 
 }
 
 /** The words of the place are made anew only when the span, the bars or the chart change. */
-function PlacedArticle({
+const PlacedArticle = memo(function PlacedArticle({
   comment,
   placeOf,
   ...rest
@@ -179,4 +181,4 @@ function PlacedArticle({
   const { startSec, endSec } = comment
   const place = useMemo(() => placeOf({ startSec, endSec }), [placeOf, startSec, endSec])
   return <CommentArticle {...rest} comment={comment} place={place} />
-}
+})
