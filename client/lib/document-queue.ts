@@ -108,6 +108,11 @@ export const createDocumentQueue = <Body, Op>(deps: Deps<Body, Op>) => {
       onChange()
       void drain()
     },
+    /** Sends what waits; also after `close`, as a component may come back with the same queue. */
+    open: (): void => {
+      isOver = false
+      void drain()
+    },
     close: (): void => {
       isOver = true
     }

@@ -72,6 +72,7 @@ export const useDocument = <Body, Op>({
     [where, memberId, client]
   )
   useEffect(() => {
+    queue.open()
     void outbox.list<PendingEdit<Op>>(memberId, where).then((kept) => {
       if (kept.length > 0) queue.restore(kept.map(({ value }) => value))
     })

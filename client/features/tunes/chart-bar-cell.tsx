@@ -35,7 +35,7 @@ function BarChords({ cell, style, beats }: BarChordsProps) {
   const { chords } = cell
   return (
     <span
-      className="grid items-baseline gap-x-1.5"
+      className="grid min-w-0 flex-1 items-baseline gap-x-1.5"
       style={{
         gridTemplateColumns: chords
           .map(({ beat }, i) => `minmax(min-content, ${Math.max(0.5, (chords[i + 1]?.beat ?? beats + 1) - beat)}fr)`)

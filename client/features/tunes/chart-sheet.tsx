@@ -47,7 +47,8 @@ export function ChartSheet({ body, style, pitch = 'C', onEdit }: ChartSheetProps
     else leave(from, true)
   }
   const focusCell = (cell: ChartCell | undefined): void => {
-    if (cell) sheet.current?.querySelector<HTMLElement>(`[data-cell="${CSS.escape(cell.key)}"]`)?.focus()
+    const buttons = [...(sheet.current?.querySelectorAll<HTMLElement>('[data-cell]') ?? [])]
+    buttons.find(({ dataset }) => dataset['cell'] === cell?.key)?.focus()
   }
   const handleKey = (event: KeyboardEvent<HTMLButtonElement>, cell: ChartCell): void => {
     const at = cells.indexOf(cell)
@@ -70,11 +71,8 @@ export function ChartSheet({ body, style, pitch = 'C', onEdit }: ChartSheetProps
     <div className="grid gap-3">
       <div ref={sheet} className="@container grid gap-5">
         {rows.map((row, i) => (
-          <div
-            key={row.key}
-            className="grid grid-cols-[2rem_minmax(0,1fr)] gap-x-2 @md:grid-cols-[3.5rem_minmax(0,1fr)]"
-          >
-            <div className="min-w-0 pt-6">
+          <div key={row.key} className="grid gap-x-2 @md:grid-cols-[4rem_minmax(0,1fr)]">
+            <div className="flex min-w-0 items-baseline gap-2 @md:block @md:pt-6">
               <h3 className="text-base font-semibold break-words">{row.name}</h3>
               {row.played || rows[i - 1]?.played === false ? null : <p className="text-xs text-pencil">not played</p>}
             </div>
