@@ -2,7 +2,6 @@
 import { Button } from '@client/ui/button'
 import { Initials } from '@client/ui/initials'
 import { VisuallyHidden } from '@client/ui/visually-hidden'
-import { VisuallyHidden } from '@client/ui/visually-hidden'
 import { Menu, type MenuItem } from '@client/ui/menu'
 import type { DeskSession } from '@client/features/sessions/use-session'
 
