@@ -40,6 +40,8 @@ export const createListening = ({ player, sessionId, meId, onState, onOver }: De
   const clock = createClockEstimator()
   let state: ListeningState | null = null
   let isOver = false
+  /** Changes of one's own that are on their way: what comes back meanwhile is older than what the hand has done. */
+  let changesOut = 0
 
   const together = createKeepTogether({
     player,
@@ -161,8 +163,14 @@ export const createListening = ({ player, sessionId, meId, onState, onOver }: De
       rate?: number
       loop?: Span | null
     }): Promise<void> => {
-      const transport = await ask('transport:change', { sessionId, ...change })
-      handleTransport({ ...transport, sessionId })
+      changesOut += 1
+      try {
+        const transport = await ask('transport:change', { sessionId, ...change })
+        handleTransport({ ...transport, sessionId })
+      } finally {
+        changesOut -= 1
+        if (state && !isOver) follow(state.session.transport)
+      }
     },
     step: async (isAway: boolean): Promise<void> => {
       update({ isAway })

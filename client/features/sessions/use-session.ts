@@ -90,7 +90,11 @@ export const useSession = ({ sessionId, me, player, onOver, onRefused }: Input):
         } else refuse()
       },
       seek: (positionSec) => change({ positionSec }),
-      setRate: (rate) => change({ rate }),
+      setRate: (rate) => {
+        // At once for the leader: a slider that waits for the server loses the steps of a held key.
+        if (isLeader) player?.setRate(rate)
+        change({ rate })
+      },
       setLoop: (loop) => change({ loop })
     }
   }, [isLeader, leaderName, player, tell])

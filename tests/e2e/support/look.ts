@@ -1,0 +1,51 @@
+// What can be measured on a page: faults that axe finds, in both themes, and whether it fits its width.
+import { AxeBuilder } from '@axe-core/playwright'
+import type { Page } from 'playwright-core'
+import { expect } from 'vitest'
+
+const tags = ['wcag2a', 'wcag2aa', 'wcag21a', 'wcag21aa', 'wcag22aa', 'best-practice']
+
+const violationsOf = async (builder: AxeBuilder): Promise<string[]> =>
+  (await builder.analyze()).violations.flatMap(({ id, nodes }) =>
+    nodes.map(({ target, failureSummary }) => `${id}: ${target.join(' ')} ${failureSummary?.split('\n')[1] ?? ''}`)
+  )
+
+/** Everything in daylight, with target sizes of 24 px (WCAG 2.2, 2.5.8); the colours once more late in the evening. */
+export const expectNoViolations = async (page: Page, what: string): Promise<void> => {
+  await page.emulateMedia({ colorScheme: 'light' })
+  const day = await violationsOf(
+    new AxeBuilder({ page }).options({
+      runOnly: { type: 'tag', values: tags },
+      rules: { 'target-size': { enabled: true } }
+    })
+  )
+  await page.emulateMedia({ colorScheme: 'dark' })
+  const night = await violationsOf(new AxeBuilder({ page }).withRules(['color-contrast', 'link-in-text-block']))
+  await page.emulateMedia({ colorScheme: 'light' })
+  expect.soft(day, `${what}, light`).toEqual([])
+  expect.soft(night, `${what}, dark`).toEqual([])
+}
+
+/** No scrolling to the side, and targets of 24 px or room around them, at each width. */
+export const expectToFit = async (page: Page, what: string, widths = [360, 320]): Promise<void> => {
+  const before = page.viewportSize()
+  for (const width of widths) {
+    await page.setViewportSize({ width, height: 740 })
+    const { over, culprits } = await page.evaluate(() => {
+      const root = document.documentElement
+      const wide = [...document.querySelectorAll('body *')].filter(
+        (element) => element.getBoundingClientRect().right > root.clientWidth + 0.5
+      )
+      const words = wide
+        .slice(0, 4)
+        .map((element) => `${element.tagName} ${element.className} ${element.textContent}`.slice(0, 120))
+      return { over: root.scrollWidth - root.clientWidth, culprits: words }
+    })
+    expect.soft(over > 0 ? culprits : [], `${what} at ${width} px`).toEqual([])
+  }
+  const small = await violationsOf(
+    new AxeBuilder({ page }).options({ runOnly: ['target-size'], rules: { 'target-size': { enabled: true } } })
+  )
+  expect.soft(small, `${what}, targets at ${widths.at(-1)} px`).toEqual([])
+  if (before) await page.setViewportSize(before)
+}
