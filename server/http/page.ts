@@ -2,7 +2,7 @@
 import { randomBytes } from 'node:crypto'
 import { readFileSync } from 'node:fs'
 import { join } from 'node:path'
-import express, { type Router } from 'express'
+import express, { type RequestHandler, type Router } from 'express'
 import { problem } from '@shared/errors/problems'
 
 /** What the build wrote where a nonce goes (vite.config.ts). */
@@ -29,7 +29,9 @@ export const servePage = (router: Router, buildDir: string): void => {
     }
   })
   // The page itself is never sent as it lies there: it needs its nonce.
-  router.use((req, res, next) => (/^\/index\.html$/i.test(req.path) ? next() : files(req, res, next)))
+  const builtFiles: RequestHandler = (req, res, next) =>
+    /^\/index\.html$/i.test(req.path) ? next() : files(req, res, next)
+  router.use(builtFiles)
   router.get('/{*path}', (req, res) => {
     if (req.path.startsWith('/api/') || req.path.startsWith('/assets/') || !req.accepts('html'))
       throw problem('not-found')
