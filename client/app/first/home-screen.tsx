@@ -16,6 +16,7 @@ import { AppShell } from '@client/ui/app-shell'
 import { Button } from '@client/ui/button'
 import { DropZone } from '@client/ui/drop-zone'
 import { Page } from '@client/ui/page'
+import { Sheet } from '@client/ui/sheet'
 import { FollowGroup } from './follow-group'
 import { KeepDialog, type Recording } from './keep-dialog'
 import { KeepRecorded } from './keep-recorded'
@@ -65,7 +66,11 @@ export function HomeScreen({ person }: { person: Me }) {
         {trial && !isOnItsWay ? <LeftHere trial={trial} onOpen={() => go('listen')} /> : null}
         <Unfinished
           ownerId={person.id}
-          renderKeep={(slot, groupId) => <KeepRecorded {...slot} group={groups.find(({ id }) => id === groupId)} />}
+          renderKeep={(slot, groupId) => (
+            <Sheet title="Keep the recording">
+              <KeepRecorded {...slot} look="plain" group={groups.find(({ id }) => id === groupId)} />
+            </Sheet>
+          )}
           onKept={(take) => queue.addSent(person.id, take)}
           onFile={listen}
         />

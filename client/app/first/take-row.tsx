@@ -14,7 +14,7 @@ export function TakeRow({ takeId, onDone }: { takeId: string; onDone: () => void
       <p className="font-semibold break-words">{take.title}</p>
       {take.state === 'ready' ? (
         <div className="flex flex-wrap items-center gap-2">
-          <Link to={paths.take(takeId)} className={buttonClass('primary')} onClick={onDone}>
+          <Link to={paths.take(takeId)} className={buttonClass()} onClick={onDone}>
             Open it<span className="sr-only">, {take.title}</span>
           </Link>
           <Button look="quiet" onClick={onDone}>

@@ -29,6 +29,7 @@ export function TrialScreen({ trial, person, isKeeping, onIn }: TrialScreenProps
         trial={trial}
         onSelection={setSpan}
         onLength={setDurationSec}
+        isCovered={isKeeping}
         actions={
           <>
             <Button onClick={() => go('keep')}>Keep this recording</Button>

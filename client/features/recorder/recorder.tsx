@@ -168,7 +168,7 @@ function OneRecording({ recording, stream, owner, renderKeep, onKept, onFile, on
           <RunningTime recording={recording} />
         </div>
         {sender ? (
-          <WayWords recording={recording} />
+          <WayWords recording={recording} isRunning={isRunning} />
         ) : (
           <p className="text-sm text-pencil">It stays in this browser until you keep it.</p>
         )}
@@ -234,7 +234,7 @@ const noSender: SenderView = { sent: 0, made: 0, way: 'open', fault: null }
 const idle = () => () => undefined
 
 /** How much of it the server has. */
-function WayWords({ recording: { sender } }: { recording: Recording }) {
+function WayWords({ recording: { sender }, isRunning }: { recording: Recording; isRunning: boolean }) {
   const { sent, made, way, fault } = useSyncExternalStore(sender?.subscribe ?? idle, sender?.view ?? (() => noSender))
   if (way === 'refused')
     return (
@@ -246,9 +246,13 @@ function WayWords({ recording: { sender } }: { recording: Recording }) {
     <p role="status" className="text-sm text-pencil">
       {way === 'offline'
         ? 'The server cannot be reached. The recording is kept on this computer and sent when it can be.'
-        : sent >= made - 1
-          ? 'It is stored on the server while you play.'
-          : 'The server is a little behind; nothing is lost.'}
+        : isRunning
+          ? sent >= made - 1
+            ? 'It is stored on the server while you play.'
+            : 'The server is a little behind; nothing is lost.'
+          : sent >= made
+            ? 'All of it is on the server.'
+            : 'The last of it is on its way to the server.'}
     </p>
   )
 }

@@ -18,17 +18,22 @@ export interface TrialDeskProps {
   /** Told on every change, so that trimming can begin with what is selected. */
   onSelection: (span: Span | null) => void
   onLength: (durationSec: Sec) => void
+  /** Something stands over the desk: it falls silent, since its controls cannot be reached. */
+  isCovered: boolean
   /** At the right of the title. */
   actions: ReactNode
 }
 
 /** A recording that nothing is known of yet: hear it, loop it, slow it. */
-export function TrialDesk({ trial, onSelection, onLength, actions }: TrialDeskProps) {
+export function TrialDesk({ trial, onSelection, onLength, isCovered, actions }: TrialDeskProps) {
   const sound = useTrialSound(trial)
   const tellLength = useLatest(onLength)
   useEffect(() => {
     if (sound.durationSec > 0) tellLength.current(sound.durationSec)
   }, [sound.durationSec, tellLength])
+  useEffect(() => {
+    if (isCovered) sound.player?.pause()
+  }, [isCovered, sound.player])
   return (
     <div className="flex w-full flex-1 flex-col gap-4 px-3 pt-3 sm:px-5">
       <title>{`${trial.file.name} · Plumbline`}</title>

@@ -1,0 +1,8 @@
+/** jsdom's Blob has no text(): its FileReader reads it. */
+export const textOf = (blob: Blob): Promise<string> =>
+  new Promise((resolve, reject) => {
+    const reader = new FileReader()
+    reader.addEventListener('load', () => resolve(String(reader.result)))
+    reader.addEventListener('error', () => reject(reader.error ?? new Error('unreadable')))
+    reader.readAsText(blob)
+  })
