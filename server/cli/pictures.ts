@@ -53,7 +53,7 @@ const signedIn = async (
 const shoot = async (page: Page, path: string, name: string): Promise<void> => {
   await page.goto(path)
   await page.waitForLoadState('networkidle')
-  await page.evaluate(() => document.fonts.ready)
+  await page.evaluate('document.fonts.ready.then(() => true)')
   await page.waitForTimeout(600)
   await page.screenshot({ path: join(target, `${name}.png`) })
   process.stdout.write(`seeds/pictures/${name}.png\n`)
