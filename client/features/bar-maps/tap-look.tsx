@@ -40,6 +40,12 @@ export function TapLook(props: TapLookProps) {
           {plan.error.message}
         </Notice>
       )}
+      <div className="flex flex-wrap gap-2">
+        <Button look="primary" icon="tick" disabled={!plan.ok} onClick={onKeep}>
+          Keep these bars
+        </Button>
+        <Button onClick={onAgain}>Tap again</Button>
+      </div>
       <Sentence label="Where these taps start">
         {'These taps start at bar '}
         <SentenceNumber
@@ -81,12 +87,6 @@ export function TapLook(props: TapLookProps) {
           </Button>
         </div>
       ) : null}
-      <div className="flex flex-wrap gap-2">
-        <Button look="primary" icon="tick" disabled={!plan.ok} onClick={onKeep}>
-          Keep these bars
-        </Button>
-        <Button onClick={onAgain}>Tap again</Button>
-      </div>
     </div>
   )
 }

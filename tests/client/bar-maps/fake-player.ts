@@ -40,6 +40,7 @@ export const fakePlayer = (): { player: FakePlayer; controls: TransportControls;
     },
     setPitch: () => undefined,
     setVolume: () => undefined,
+    setTrim: () => undefined,
     setLoop: (loop) => {
       player.loop = loop
     },
