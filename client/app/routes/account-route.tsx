@@ -1,6 +1,5 @@
 import { Link } from 'react-router-dom'
 import type { Me } from '@shared/contracts/account'
-import { ChordWriting } from '@client/app/account/chord-writing'
 import { AccountMenu } from '@client/features/account/account-menu'
 import { useMe } from '@client/features/account/api'
 import { NameForm } from '@client/features/account/name-form'
@@ -10,6 +9,7 @@ import { ThemeChoice } from '@client/features/account/theme-choice'
 import { useAskingSignOut } from '@client/features/account/use-sign-out'
 import { roleWords } from '@client/features/groups/role-words'
 import { StartGroup } from '@client/features/groups/start-group'
+import { ChordStyleChoice } from '@client/features/tunes/chord-style-choice'
 import { paths } from '@client/lib/paths'
 import { AppShell } from '@client/ui/app-shell'
 import { Button } from '@client/ui/button'
@@ -46,11 +46,8 @@ function Account({ me }: { me: Me }) {
       <PageSection title="Groups" aside={<StartGroup />}>
         <Memberships me={me} />
       </PageSection>
-      <PageSection title="Look">
+      <PageSection title="Look" aside={<ChordStyleChoice />}>
         <ThemeChoice />
-      </PageSection>
-      <PageSection title="How chords are written">
-        <ChordWriting />
       </PageSection>
       <PageSection title="Tap lag">
         <TapLag me={me} />

@@ -1,4 +1,5 @@
-import { Link, useParams } from 'react-router-dom'
+import { useState } from 'react'
+import { Link, useNavigate, useParams } from 'react-router-dom'
 import type { Group } from '@shared/contracts/groups'
 import { AccountMenu } from '@client/features/account/account-menu'
 import { GroupGate } from '@client/features/groups/group-gate'
@@ -8,9 +9,10 @@ import { TuneList } from '@client/features/groups/tune-list'
 import { UnheardTakes } from '@client/features/groups/unheard-takes'
 import { useGroup } from '@client/features/groups/api'
 import { useGroupFollow } from '@client/app/desk/use-group-follow'
+import { NewTune } from '@client/features/tunes/new-tune'
 import { paths } from '@client/lib/paths'
 import { AppShell } from '@client/ui/app-shell'
-import { buttonClass } from '@client/ui/button'
+import { Button, buttonClass } from '@client/ui/button'
 import { Page } from '@client/ui/page'
 
 export function GroupRoute() {
@@ -44,8 +46,30 @@ function GroupPage({ group }: { group: Group }) {
             : 'Somebody has to share one with you or with the group.'
         }
       />
-      <TuneList groupId={group.id} />
+      <TuneList
+        groupId={group.id}
+        action={group.abilities.includes('group:add-tune') ? <AddTune groupId={group.id} /> : null}
+      />
       <UnheardTakes groupId={group.id} />
     </Page>
+  )
+}
+
+function AddTune({ groupId }: { groupId: string }) {
+  const [isAdding, setAdding] = useState(false)
+  const navigate = useNavigate()
+  return (
+    <>
+      <Button look="quiet" icon="plus" onClick={() => setAdding(true)}>
+        New tune
+      </Button>
+      {isAdding ? (
+        <NewTune
+          groupId={groupId}
+          onCreated={({ id }) => void navigate(paths.tune(id))}
+          onClose={() => setAdding(false)}
+        />
+      ) : null}
+    </>
   )
 }
