@@ -39,14 +39,10 @@ export function FormTools({ body, bar, tune, edits }: FormToolsProps) {
         <ActionRow says="For introductions, interludes and endings: bars there have no place in the form.">
           <Button onClick={() => set({ bar, formBar: null, newPass: false })}>Outside the form from bar {bar}</Button>
         </ActionRow>
-        <ActionRow
-          says={`For bars the take adds, drops or repeats: the form goes on from there within the same ${pass}.`}
-        >
-          <Button onClick={() => set({ bar, formBar, newPass: false })}>
-            Bar {bar} is bar {formBar} of the form
-          </Button>
+        <ActionRow says={`For bars the take adds, drops or repeats, within the same ${pass}.`}>
+          <Button onClick={() => set({ bar, formBar, newPass: false })}>From bar {bar} the form goes on</Button>
           <Sentence label="Bar of the form">
-            {'of the form: bar '}
+            {'with its bar '}
             <SentenceNumber label="bar of the form" min={1} max={formLength} value={formBar} onChange={setFormBar} />
             {` of ${formLength}`}
           </Sentence>
