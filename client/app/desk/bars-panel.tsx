@@ -52,11 +52,8 @@ export function BarsPanel({ me, material, player, controls, selection, onClose }
           onBar={setBar}
           tapLagMs={me.tapLagMs}
           onTapLag={(tapLagMs) => update.mutate({ body: { tapLagMs } })}
-          onPreview={material.preview}
-          onClose={() => {
-            material.preview(null)
-            onClose()
-          }}
+          onPreview={preview}
+          onClose={onClose}
         />
       </PanelBoundary>
     </div>

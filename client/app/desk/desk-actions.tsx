@@ -1,32 +1,34 @@
-import { Link } from 'react-router-dom'
 import type { Take } from '@shared/contracts/takes'
 import type { Tune } from '@shared/contracts/tunes'
-import { paths } from '@client/lib/paths'
-import { QuietButton, quietClass } from './quiet-button'
+import { QuietButton } from './quiet-button'
+
+export type DeskPanel = 'bars' | 'chart'
 
 export interface DeskActionsProps {
   take: Take
   tune: Tune | null
-  areBarsOpen: boolean
-  onBars: () => void
+  /** Which panel stands open under the timeline. */
+  panel: DeskPanel | null
+  onPanel: (panel: DeskPanel | null) => void
   onTune: () => void
   onTable: () => void
 }
 
 /** What can be done with the take's bars and chords, at the right of the selection's words. */
-export function DeskActions({ take, tune, areBarsOpen, onBars, onTune, onTable }: DeskActionsProps) {
+export function DeskActions({ take, tune, panel, onPanel, onTune, onTable }: DeskActionsProps) {
   const can = (ability: string) => take.abilities.includes(ability)
+  const toggle = (which: DeskPanel) => onPanel(panel === which ? null : which)
   return (
     <div className="flex flex-wrap items-center">
       {can('take:edit-bars') ? (
-        <QuietButton aria-expanded={areBarsOpen} onClick={onBars}>
+        <QuietButton aria-expanded={panel === 'bars'} onClick={() => toggle('bars')}>
           Edit bars
         </QuietButton>
       ) : null}
       {tune ? (
-        <Link to={paths.tune(tune.id)} className={quietClass}>
-          Chart
-        </Link>
+        <QuietButton aria-expanded={panel === 'chart'} onClick={() => toggle('chart')}>
+          {tune.abilities.includes('tune:edit') ? 'Edit chart' : 'Chart'}
+        </QuietButton>
       ) : can('take:edit') ? (
         <QuietButton aria-haspopup="dialog" onClick={onTune}>
           Put it to a tune

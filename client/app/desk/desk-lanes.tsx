@@ -33,7 +33,7 @@ export interface DeskLanesProps {
   /** What lays the first bars; null for those who may not. */
   layBars: ReactNode
   /** Under the timeline. */
-  barsPanel: ReactNode
+  panel: ReactNode
   /** Stands between strip and timeline. */
   children: ReactNode
 }
@@ -114,7 +114,7 @@ export function DeskLanes(props: DeskLanesProps) {
           </PanelBoundary>
         </div>
       )}
-      {props.barsPanel}
+      {props.panel}
     </>
   )
 }

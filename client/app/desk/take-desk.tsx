@@ -20,7 +20,8 @@ import { nudgeSec, type Snap } from '@shared/timing/snap'
 import type { Span } from '@shared/timing/types'
 import { BarsPanel } from './bars-panel'
 import { BarsTable } from './bars-table'
-import { DeskActions } from './desk-actions'
+import { ChartPanel } from './chart-panel'
+import { DeskActions, type DeskPanel } from './desk-actions'
 import { DeskLanes } from './desk-lanes'
 import { DeskMargin } from './desk-margin'
 import { PanelBoundary } from './panel-boundary'
@@ -53,7 +54,7 @@ export function TakeDesk({ me, take, player, onGone }: TakeDeskProps) {
   const [selection, setSelection] = useState<Span | null>(null)
   const hearing = useHearing(me, take, player, selection)
   const { controls } = hearing
-  const [areBarsOpen, setBarsOpen] = useState(false)
+  const [panel, setPanel] = useState<DeskPanel | null>(null)
   const [selectedId, setSelectedId] = useState<string | null>(null)
   const [snap, setSnap] = useState<Snap>('bar')
   const [isFollowing, setFollowing] = useState(true)
@@ -117,10 +118,6 @@ export function TakeDesk({ me, take, player, onGone }: TakeDeskProps) {
     const sec = nudgeSec(edge === 'start' ? span.startSec : span.endSec, 'beat', steps, model)
     const moved = edge === 'start' ? { ...span, startSec: sec } : { ...span, endSec: sec }
     return moved.endSec > moved.startSec ? moved : span
-  }
-  const closeBars = () => {
-    material.preview(null)
-    setBarsOpen(false)
   }
   const undo = () => {
     const bringBack = lastRemoval.current
@@ -213,22 +210,30 @@ export function TakeDesk({ me, take, player, onGone }: TakeDeskProps) {
               onSnap={setSnap}
               isFollowing={isFollowing}
               onFollow={setFollowing}
-              isEditingBars={areBarsOpen}
+              isEditingBars={panel === 'bars'}
               isNarrow={isPhone}
               layBars={
-                can('take:edit-bars') && !areBarsOpen ? (
-                  <Button onClick={() => setBarsOpen(true)}>Lay the bars</Button>
+                can('take:edit-bars') && panel !== 'bars' ? (
+                  <Button onClick={() => setPanel('bars')}>Lay the bars</Button>
                 ) : null
               }
-              barsPanel={
-                areBarsOpen ? (
+              panel={
+                panel === 'bars' ? (
                   <BarsPanel
                     me={me}
                     material={material}
                     player={player}
                     controls={controls}
                     selection={selection}
-                    onClose={closeBars}
+                    onClose={() => setPanel(null)}
+                  />
+                ) : panel === 'chart' && tune ? (
+                  <ChartPanel
+                    tune={tune}
+                    memberId={me.id}
+                    style={material.chordStyle}
+                    onBody={material.previewChart}
+                    onClose={() => setPanel(null)}
                   />
                 ) : null
               }
@@ -243,8 +248,8 @@ export function TakeDesk({ me, take, player, onGone }: TakeDeskProps) {
                 <DeskActions
                   take={take}
                   tune={tune}
-                  areBarsOpen={areBarsOpen}
-                  onBars={() => (areBarsOpen ? closeBars() : setBarsOpen(true))}
+                  panel={panel}
+                  onPanel={setPanel}
                   onTune={() => setOpen('tune')}
                   onTable={() => setOpen('table')}
                 />

@@ -14,6 +14,7 @@ import { useRouteQuery } from '@client/lib/query'
 import type { PeaksSource } from '@client/timeline/peaks-source'
 import type { CommentSpan } from '@client/timeline/timeline-types'
 import type { ChordStyle } from '@shared/music/chord-typeset'
+import type { ChartBody } from '@shared/music/types'
 import type { BarMapBody } from '@shared/timing/types'
 import { deskModel, type DeskModel } from './desk-model'
 
@@ -23,6 +24,8 @@ export interface TakeMaterial {
   /** Draws these bars in place of the kept ones, while they wait for an answer. */
   preview: (body: BarMapBody | null) => void
   chordStyle: ChordStyle
+  /** Draws this chart in place of the kept one, while it is being edited. */
+  previewChart: (body: ChartBody | null) => void
   tune: Tune | null
   comments: TakeComments
   letters: ReadonlyMap<string, string>
@@ -39,12 +42,13 @@ export const useTakeMaterial = (take: Take, me: Me): TakeMaterial => {
   const edits = useBarEdits(bars)
   const [previewed, preview] = useState<BarMapBody | null>(null)
   const [chordStyle] = useChordStyle()
+  const [editedChart, previewChart] = useState<ChartBody | null>(null)
   const tune = useRouteQuery(tuneRoutes.get, { params: { tuneId: tuneId ?? '' } }, { enabled: tuneId !== null })
   const comments = useTakeComments(takeId, me)
   const peaks = usePeaks(takeId, take.state === 'ready')
 
   const durationSec = take.durationSec ?? 0
-  const chart = (tuneId && tune.data?.chart) || null
+  const chart = editedChart ?? ((tuneId && tune.data?.chart) || null)
   const { body, fault } = bars
   const drawn = previewed ?? body
   const model = useMemo(
@@ -61,6 +65,7 @@ export const useTakeMaterial = (take: Take, me: Me): TakeMaterial => {
     edits,
     preview,
     chordStyle,
+    previewChart,
     tune: (tuneId && tune.data) || null,
     comments,
     letters,
