@@ -1,6 +1,7 @@
 import { fileURLToPath } from 'node:url'
 import tailwindcss from '@tailwindcss/vite'
 import react from '@vitejs/plugin-react'
+import type { ProxyOptions } from 'vite'
 import { defineConfig } from 'vitest/config'
 
 const here = (path: string) => fileURLToPath(new URL(path, import.meta.url))
@@ -15,7 +16,7 @@ const project = (name: string, extra: Record<string, unknown> = {}) => ({
 // Given by `npm run dev`: where the server answers while Vite serves the page.
 const api = process.env['PLUMBLINE_DEV_API']
 // The host stays as the browser sent it: the server takes writes from its own origin only.
-const proxy = api
+const proxy: Record<string, ProxyOptions> = api
   ? { '/api': { target: api }, '/healthz': { target: api }, '/socket.io': { target: api, ws: true } }
   : {}
 

@@ -40,6 +40,9 @@ export const createDocumentQueue = <Body, Op>(deps: Deps<Body, Op>) => {
   let isSending = false
   let isOver = false
   let delayMs = 500
+  /** The request under way, if there is one. What the server says meanwhile may or may not hold that edit already. */
+  let inFlight: Promise<unknown> | null = null
+  let heardMeanwhile: DocumentState<Body> | null = null
 
   const drop = (id: string): void => {
     pending = pending.filter((edit) => edit.id !== id)
@@ -47,17 +50,32 @@ export const createDocumentQueue = <Body, Op>(deps: Deps<Body, Op>) => {
     onChange()
   }
 
+  const hearMeanwhile = (): void => {
+    const state = heardMeanwhile
+    heardMeanwhile = null
+    if (!state || !server || state.revision <= server.revision) return
+    server = state
+    onState(state)
+    onChange()
+  }
+
   const drain = async (): Promise<void> => {
     if (isSending) return
     isSending = true
-    while (!isOver && server && pending[0]) {
+    for (;;) {
+      if (isOver || !server || !pending[0]) break
       const edit = pending[0]
       try {
-        const state = await send({ ...edit, baseRevision: server.revision })
+        const sending = send({ ...edit, baseRevision: server.revision })
+        inFlight = sending
+        const state = await sending.finally(() => {
+          inFlight = null
+        })
         delayMs = 500
         server = state
         onState(state)
         drop(edit.id)
+        hearMeanwhile()
       } catch (error) {
         if (!(error instanceof ApiProblem)) throw error
         if (error.code === 'offline' || error.code === 'unavailable' || error.code === 'too-many') {
@@ -71,6 +89,7 @@ export const createDocumentQueue = <Body, Op>(deps: Deps<Body, Op>) => {
           onState(server)
         }
         drop(edit.id)
+        hearMeanwhile()
         onRefused({ edit, message: error.message, isConflict: error.code === 'conflict' })
       }
     }
@@ -92,9 +111,24 @@ export const createDocumentQueue = <Body, Op>(deps: Deps<Body, Op>) => {
     /** A state that came from elsewhere; older ones than known are passed over. */
     receive: (state: DocumentState<Body>): void => {
       if (server && state.revision < server.revision) return
+      if (inFlight) {
+        heardMeanwhile = state
+        return
+      }
       server = state
       onChange()
       void drain()
+    },
+    /** Takes back the last edit that has not set out yet; false when there is none. */
+    takeBack: (): boolean => {
+      const last = pending.at(-1)
+      if (!last || (pending.length === 1 && inFlight)) return false
+      drop(last.id)
+      return true
+    },
+    /** Resolves when no request is under way. */
+    landed: async (): Promise<void> => {
+      await inFlight?.catch(() => undefined)
     },
     restore: (edits: PendingEdit<Op>[]): void => {
       const known = new Set(pending.map((edit) => edit.id))

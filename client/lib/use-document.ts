@@ -1,5 +1,5 @@
 // A document on the screen: edits are seen at once, survive a reload and a lost connection, and can be taken back.
-import { useCallback, useEffect, useMemo, useReducer, useState } from 'react'
+import { useEffect, useMemo, useReducer, useState } from 'react'
 import { useQueryClient } from '@tanstack/react-query'
 import type { DocumentKind } from '@shared/documents/document'
 import type { RequestOf, RouteDef } from '@shared/contracts/route'
@@ -20,7 +20,7 @@ export interface DocumentSource<Body, Op> {
   kind: DocumentKind<Body, Op>
   routes: DocumentRoutes
   params: Record<string, string>
-  /** Whose edits these are. */
+  /** Whose edits these are. `kind` and `routes` are the same objects on every render. */
   memberId: string
 }
 
@@ -40,7 +40,6 @@ export interface LiveDocument<Body, Op> {
   redo(): Promise<void>
 }
 
-const place = (path: string, params: Record<string, string>): string => `${path} ${JSON.stringify(params)}`
 const wait = (ms: number): Promise<void> => new Promise((done) => setTimeout(done, ms))
 
 export const useDocument = <Body, Op>({
@@ -52,24 +51,34 @@ export const useDocument = <Body, Op>({
   const client = useQueryClient()
   const [, redraw] = useReducer((n: number) => n + 1, 0)
   const [refused, setRefused] = useState<RefusedEdit<Op> | null>(null)
-  const where = place(routes.get.path, params)
-  const request = useMemo(() => ({ params }) as unknown as RequestOf<RouteDef>, [where])
-  const query = useRouteQuery(routes.get, request)
+  // The same words are the same document, whatever object they came in.
+  const paramsText = JSON.stringify(params)
+  const where = `${routes.get.path} ${paramsText}`
+  const requestWith = useMemo(
+    () =>
+      (body?: unknown): RequestOf<RouteDef> =>
+        ({ params: JSON.parse(paramsText), ...(body === undefined ? {} : { body }) }) as RequestOf<RouteDef>,
+    [paramsText]
+  )
+  const query = useRouteQuery(routes.get, requestWith())
+  const keep = useMemo(
+    () => (state: unknown) => client.setQueryData(routeKey(routes.get, requestWith()), state),
+    [client, routes, requestWith]
+  )
 
   const queue = useMemo(
     () =>
       createDocumentQueue<Body, Op>({
         kind,
-        send: (body) =>
-          callRoute(routes.edit, { params, body } as unknown as RequestOf<RouteDef>) as Promise<DocumentState<Body>>,
+        send: (body) => callRoute(routes.edit, requestWith(body)) as Promise<DocumentState<Body>>,
         keep: (edit) => outbox.put(memberId, where, edit.id, edit),
         forget: (id) => outbox.remove(id),
         onChange: redraw,
-        onState: (state) => client.setQueryData(routeKey(routes.get, request), state),
+        onState: keep,
         onRefused: setRefused,
         wait
       }),
-    [where, memberId, client]
+    [kind, routes, where, memberId, requestWith, keep]
   )
   useEffect(() => {
     queue.open()
@@ -83,19 +92,16 @@ export const useDocument = <Body, Op>({
     if (data) queue.receive(data)
   }, [queue, data])
 
-  const step = useCallback(
-    async (route: RouteDef): Promise<void> => {
-      try {
-        const state = await callRoute(route, { params, body: { id: freshId() } } as unknown as RequestOf<RouteDef>)
-        client.setQueryData(routeKey(routes.get, request), state)
-      } catch (error) {
-        if (!(error instanceof ApiProblem)) throw error
-        if (error.code === 'nothing-to-undo') return
-        setRefused({ edit: { id: '', operations: [] }, message: error.message, isConflict: error.code === 'conflict' })
-      }
-    },
-    [where, client]
-  )
+  const step = async (route: RouteDef): Promise<void> => {
+    try {
+      await queue.landed()
+      keep(await callRoute(route, requestWith({ id: freshId() })))
+    } catch (error) {
+      if (!(error instanceof ApiProblem)) throw error
+      if (error.code === 'nothing-to-undo') return
+      setRefused({ edit: { id: '', operations: [] }, message: error.message, isConflict: error.code === 'conflict' })
+    }
+  }
   const state = queue.state() ?? data
   return {
     body: queue.body() ?? data?.body ?? null,
@@ -107,7 +113,9 @@ export const useDocument = <Body, Op>({
     refused,
     dismissRefused: () => setRefused(null),
     edit: (operations) => queue.push({ id: freshId(), operations }),
-    undo: () => step(routes.undo),
+    undo: async () => {
+      if (!queue.takeBack()) await step(routes.undo)
+    },
     redo: () => step(routes.redo)
   }
 }

@@ -22,7 +22,10 @@ const simulate = (startLagMs: number) => {
       position = loop.span.startSec
       soundsFrom = now + startLagMs
     }
-    for (const timer of timers.splice(0)) timer.at <= now ? timer.work() : timers.push(timer)
+    for (const timer of timers.splice(0)) {
+      if (timer.at <= now) timer.work()
+      else timers.push(timer)
+    }
   }
   const player = {
     get state() {
