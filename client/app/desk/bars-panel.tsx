@@ -34,9 +34,12 @@ export function BarsPanel({ me, material, player, controls, selection, onClose }
   const [bar, setBar] = useState<BarIndex | null>(null)
   const update = useUpdateMe()
   const box = useRef<HTMLDivElement>(null)
+  const { preview } = material
   useEffect(() => {
     void box.current?.scrollIntoView({ block: 'nearest' })
   }, [])
+  // Bars that were only tried go with the panel.
+  useEffect(() => () => preview(null), [preview])
   return (
     <div ref={box}>
       <PanelBoundary name="the bars">

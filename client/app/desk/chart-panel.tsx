@@ -24,7 +24,9 @@ export interface ChartPanelProps {
 /** The chart of the take's tune, edited bar by bar under the timeline. */
 export function ChartPanel(props: ChartPanelProps) {
   const box = useRef<HTMLDivElement>(null)
-  useEffect(() => box.current?.scrollIntoView({ block: 'nearest' }), [])
+  useEffect(() => {
+    void box.current?.scrollIntoView({ block: 'nearest' })
+  }, [])
   return (
     <div ref={box}>
       <PanelBoundary name="the chart">
