@@ -40,7 +40,9 @@ function Chart({ tune, memberId, style, onBody, onClose }: ChartPanelProps) {
   const document = useChart(tune.id, memberId)
   const { body, edit } = document
   const id = useId()
-  useEffect(() => onBody(body), [body, onBody])
+  useEffect(() => {
+    onBody(body)
+  }, [body, onBody])
   useEffect(() => () => onBody(null), [onBody])
   const canEdit = tune.abilities.includes('tune:edit')
   return (
