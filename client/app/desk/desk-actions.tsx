@@ -12,10 +12,11 @@ export interface DeskActionsProps {
   onPanel: (panel: DeskPanel | null) => void
   onTune: () => void
   onTable: () => void
+  onSettings: () => void
 }
 
 /** What can be done with the take's bars and chords, at the right of the selection's words. */
-export function DeskActions({ take, tune, panel, onPanel, onTune, onTable }: DeskActionsProps) {
+export function DeskActions({ take, tune, panel, onPanel, onTune, onTable, onSettings }: DeskActionsProps) {
   const can = (ability: string) => take.abilities.includes(ability)
   const toggle = (which: DeskPanel) => onPanel(panel === which ? null : which)
   return (
@@ -36,6 +37,9 @@ export function DeskActions({ take, tune, panel, onPanel, onTune, onTable }: Des
       ) : null}
       <QuietButton aria-haspopup="dialog" onClick={onTable}>
         Bars and chords as a table
+      </QuietButton>
+      <QuietButton aria-haspopup="dialog" onClick={onSettings}>
+        {can('take:edit') ? 'Share and keep' : 'About this take'}
       </QuietButton>
     </div>
   )

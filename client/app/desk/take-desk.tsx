@@ -8,6 +8,7 @@ import type { SpanEdge } from '@client/features/comments/move-row'
 import { useTakeProgress } from '@client/features/takes/api'
 import { PutToTune } from '@client/features/takes/put-to-tune'
 import { ReadingState } from '@client/features/takes/reading-state'
+import { TakeSettings } from '@client/features/takes/take-settings'
 import { paths } from '@client/lib/paths'
 import type { TimelineHandle } from '@client/timeline/timeline'
 import type { Player } from '@client/transport/player'
@@ -59,7 +60,7 @@ export function TakeDesk({ me, take, player, onGone }: TakeDeskProps) {
   const [snap, setSnap] = useState<Snap>('bar')
   const [isFollowing, setFollowing] = useState(true)
   const [areKeysOff, setKeysOff] = useState(false)
-  const [open, setOpen] = useState<'keys' | 'table' | 'tune' | null>(null)
+  const [open, setOpen] = useState<'keys' | 'table' | 'tune' | 'settings' | null>(null)
   const [writeCount, setWriteCount] = useState(0)
   const timeline = useRef<TimelineHandle>(null)
   const foot = useRef<HTMLDivElement>(null)
@@ -252,6 +253,7 @@ export function TakeDesk({ me, take, player, onGone }: TakeDeskProps) {
                   onPanel={setPanel}
                   onTune={() => setOpen('tune')}
                   onTable={() => setOpen('table')}
+                  onSettings={() => setOpen('settings')}
                 />
               </div>
               {hearing.pointed.map(({ name, span }) => (
@@ -309,6 +311,7 @@ export function TakeDesk({ me, take, player, onGone }: TakeDeskProps) {
           onClose={() => setOpen(null)}
         />
       ) : null}
+      {open === 'settings' ? <TakeSettings take={take} onClose={() => setOpen(null)} onRemoved={onGone} /> : null}
       {open === 'tune' ? <PutToTune take={take} onClose={() => setOpen(null)} /> : null}
     </AppShell>
   )
