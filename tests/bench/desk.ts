@@ -77,7 +77,7 @@ const loadFigures = async (browser: Browser, stage: Stage, rounds: number): Prom
   const cold = first[0] as Usable
   const how = `${what}, from the navigation until Play can be pressed and the sound is drawn; peer: an empty page`
   const peers = (offset: 0 | 1) => empties.filter((_, i) => i % 2 === offset)
-  const of = (loads: readonly Usable[], key: 'usableMs' | 'largestPaintMs' | 'firstPaintMs') =>
+  const of = (loads: readonly Usable[], key: 'usableMs' | 'playMs' | 'drawnMs' | 'largestPaintMs' | 'firstPaintMs') =>
     loads.map((one) => one[key])
   const code = ['js', 'css', 'woff2']
   return [
@@ -93,6 +93,8 @@ const loadFigures = async (browser: Browser, stage: Stage, rounds: number): Prom
       { ours: of(second, 'usableMs'), peer: peers(1) },
       `${how}; files kept by the browser`
     ),
+    alone('Play can be pressed, first time', 'ms', middle(of(first, 'playMs')), how),
+    alone('sound is drawn, first time', 'ms', middle(of(first, 'drawnMs')), how),
     alone('first paint, first time', 'ms', middle(of(first, 'firstPaintMs')), 'first contentful paint'),
     alone(
       'largest paint, first time',
@@ -128,6 +130,7 @@ const frameFigures = async (browser: Browser, stage: Stage, rounds: number): Pro
   const faults: string[] = []
   desk.on('pageerror', (error) => faults.push(error.message))
   await usable(desk, `${real.url}/takes/${takeId}`)
+  await desk.getByTestId('sound').scrollIntoViewIfNeeded()
   const lanes = await desk.getByTestId('sound').boundingBox()
   if (!lanes) throw new Error('There is no lane of sound on the desk')
   const at = { x: lanes.x + lanes.width / 2, y: lanes.y + lanes.height / 2 }
@@ -144,6 +147,7 @@ const frameFigures = async (browser: Browser, stage: Stage, rounds: number): Pro
   const slow = (frames: readonly Frames[]) => frames.map(({ gaps }) => percentile(gaps, 0.95))
   const usual = (frames: readonly Frames[]) => frames.map(({ gaps }) => middle(gaps))
   await context.close()
+  if (seen.ours.some(({ taken }) => taken < 20)) throw new Error('The timeline did not take the wheel')
   if (faults.length > 0) throw new Error(`The desk has faults: ${faults.join('; ')}`)
   const how = `${what}, ${movingMs / 1000} s of zooming and panning by wheel; peer: an empty page under the same wheel`
   const detail = seen.ours
