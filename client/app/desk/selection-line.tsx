@@ -13,7 +13,11 @@ export interface SelectionLineProps {
 /** What is selected, in words, and its address. */
 export function SelectionLine({ model, selection, onCopy, onClear }: SelectionLineProps) {
   if (!selection)
-    return <p className="min-w-0 py-1 text-sm text-pencil">Nothing is selected: drag over bars, or mark them.</p>
+    return (
+      <p className="min-w-0 py-1 text-sm text-pencil">
+        Nothing is selected: drag over {model.barMap ? 'bars' : 'the sound'}, or mark the ends.
+      </p>
+    )
   const { place, where, over } = model.placeOf(selection)
   return (
     <div className="flex min-w-0 flex-wrap items-center gap-x-1">

@@ -113,14 +113,15 @@ export function CommentsPanel(props: CommentsPanelProps) {
         </Notice>
       ) : null}
       {/* APG feed: Page keys go from article to article. */}
-      {/* oxlint-disable-next-line jsx-a11y/no-noninteractive-element-interactions */}
+      {/* oxlint-disable-next-line jsx-a11y/no-noninteractive-element-interactions, jsx-a11y/no-static-element-interactions */}
       <div
         ref={feed}
-        role="feed"
-        aria-label="Comments"
+        // A feed without articles is none (WAI-ARIA: required owned elements).
+        role={shown.length > 0 ? 'feed' : undefined}
+        aria-label={shown.length > 0 ? 'Comments' : undefined}
         aria-busy={said.isLoading || drawn < shown.length}
         onKeyDown={handleKey}
-        className="order-2 min-h-0 flex-1 lg:order-none lg:overflow-y-auto"
+        className={shown.length > 0 ? 'order-2 min-h-0 flex-1 lg:order-none lg:overflow-y-auto' : undefined}
       >
         {shown.slice(0, drawn).map((comment, index) => (
           <PlacedArticle
@@ -137,14 +138,16 @@ export function CommentsPanel(props: CommentsPanelProps) {
         ))}
       </div>
       {!said.isLoading && !said.fault && shown.length === 0 ? (
-        <Empty
-          says={
-            comments.length === 0
-              ? 'What you hear in this take stands here, beside its bars.'
-              : 'Nothing is open: every question is settled.'
-          }
-          how={comments.length === 0 && props.canComment ? 'Select bars, then write about them.' : undefined}
-        />
+        <div className="order-2 flex-1 lg:order-none">
+          <Empty
+            says={
+              comments.length === 0
+                ? 'What you hear in this take stands here, beside its bars.'
+                : 'Nothing is open: every question is settled.'
+            }
+            how={comments.length === 0 && props.canComment ? 'Select a stretch of it, then write about it.' : undefined}
+          />
+        </div>
       ) : null}
       {props.canComment ? (
         <div className="flex-none pt-3 pb-3 lg:pb-0">

@@ -1,5 +1,6 @@
 // Tells, politely, what others wrote while one is at the desk. How often it may be told is for the log to hold to.
 import { useEffect, useRef } from 'react'
+import { aboutWords } from '@client/features/comments/about-words'
 import type { ShownComment } from '@client/features/comments/changes'
 import type { Span } from '@shared/timing/types'
 
@@ -22,7 +23,7 @@ export const useCommentNews = ({ comments, isLoading, memberId, placeOf, say }: 
     if (!before) return
     for (const comment of comments) {
       const { id, author, kind, replies } = comment
-      const place = placeOf(spanOf(comment))
+      const place = aboutWords(placeOf(spanOf(comment)))
       if (!before.has(id) && author.id !== memberId) say(`${author.name} wrote about ${place}: ${kind}.`)
       for (const reply of replies)
         if (!before.has(reply.id) && reply.author.id !== memberId) say(`${reply.author.name} answered about ${place}.`)

@@ -3,6 +3,7 @@ import type { CommentKind } from '@shared/contracts/comments'
 import { limits } from '@shared/limits'
 import type { PlaceWords } from '@shared/timing/place-words'
 import type { Span } from '@shared/timing/types'
+import { aboutWords } from './about-words'
 import { KindChoice } from './kind-choice'
 import { useDraft } from './use-draft'
 import { WordsForm } from './words-form'
@@ -51,7 +52,7 @@ export function WriteBox(props: WriteBoxProps) {
       }}
     >
       <WordsForm
-        label={`Write about ${placeOf(target).place}`}
+        label={`Write about ${aboutWords(placeOf(target).place)}`}
         placeholder="What do you hear?"
         does="Say it"
         look="primary"

@@ -4,6 +4,7 @@ import userEvent from '@testing-library/user-event'
 import { afterEach, beforeEach, describe, expect, it, vi } from 'vitest'
 import { opens, type Comment } from '@shared/contracts/comments'
 import type { Span } from '@shared/timing/types'
+import { aboutWords } from '@client/features/comments/about-words'
 import { useTakeComments } from '@client/features/comments/api'
 import { CommentsPanel } from '@client/features/comments/comments-panel'
 import { lettersOf } from '@client/features/comments/letters'
@@ -120,14 +121,14 @@ const open = async (comments: Comment[], options: Options = {}, takeId = freshId
     </QueryClientProvider>
   )
   const view = render(page())
-  await waitFor(() => expect(screen.getByRole('feed').getAttribute('aria-busy')).toBe('false'))
+  await waitFor(() => expect(document.querySelector('[aria-busy="false"]')).toBeTruthy())
   return {
     takeId,
     user: userEvent.setup(),
     reload: async () => {
       view.unmount()
       render(page())
-      await waitFor(() => expect(screen.getByRole('feed').getAttribute('aria-busy')).toBe('false'))
+      await waitFor(() => expect(document.querySelector('[aria-busy="false"]')).toBeTruthy())
     }
   }
 }
@@ -215,6 +216,14 @@ describe('writing', () => {
     expect(server.comments[0]).toMatchObject({ kind: 'to fix', text: 'Late here.', startSec: 5, endSec: 8 })
     await waitFor(() => expect(screen.queryByText('sending …')).toBeNull())
     expect(articles()).toHaveLength(1)
+  })
+
+  it('is about a moment or a stretch of time where there are no bars', () => {
+    expect(['at 1:23.4', 'from 0:08.0 to 0:10.0', 'bar 19, beat 3'].map(aboutWords)).toEqual([
+      '1:23.4',
+      '0:08.0 to 0:10.0',
+      'bar 19, beat 3'
+    ])
   })
 
   it('says nothing when nothing is written', async () => {
