@@ -5,7 +5,11 @@ import type { ProxyOptions } from 'vite'
 import { defineConfig } from 'vitest/config'
 
 const here = (path: string) => fileURLToPath(new URL(path, import.meta.url))
-const alias = { '@shared': here('./shared'), '@server': here('./server'), '@client': here('./client') }
+const alias = [
+  ...['shared', 'server', 'client'].map((room) => ({ find: `@${room}`, replacement: here(`./${room}`) })),
+  // Only in the browser: tests run the package as the server does.
+  ...(process.env['VITEST'] ? [] : [{ find: /^zod$/, replacement: here('./client/lib/zod.ts') }])
+]
 
 // Journeys and database tests share two cores and one PostgreSQL, so only pure tests run file-parallel.
 const project = (name: string, extra: Record<string, unknown> = {}) => ({
