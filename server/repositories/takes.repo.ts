@@ -16,7 +16,6 @@ export interface TakeMedia {
   state: Take['state']
   originalMime: string | null
   renditionMime: string | null
-  manifest: unknown
 }
 export interface IngestedTake {
   durationSec: number
@@ -111,20 +110,20 @@ export const createTakesRepo = (db: Db) => {
       return row ? { groupId: row.group_id, uploaderId: row.uploader_id, durationSec: row.duration_sec } : null
     },
     media: async (id: string): Promise<TakeMedia | null> => {
-      const row = await db('takes')
-        .where({ id })
-        .first('group_id', 'title', 'state', 'original_mime', 'rendition_mime', 'manifest')
+      const row = await db('takes').where({ id }).first('group_id', 'title', 'state', 'original_mime', 'rendition_mime')
       return row
         ? {
             groupId: row.group_id,
             title: row.title,
             state: row.state,
             originalMime: row.original_mime,
-            renditionMime: row.rendition_mime,
-            manifest: row.manifest
+            renditionMime: row.rendition_mime
           }
         : null
     },
+    /** The manifest of the pieces: an hour's is some 46 kB, so that only who asks for pieces reads it. */
+    manifest: async (id: string): Promise<unknown> =>
+      (await db('takes').where({ id, state: 'ready' }).first('manifest'))?.manifest ?? null,
     /** Newest first, one page and a row more; only takes whose reach lets this person hear them, decided in the query. */
     audible: async (
       userId: string,

@@ -92,6 +92,13 @@ export const createTakeService = (deps: Deps) => {
         errors: [{ in: 'body', path: 'tuneId', message: 'There is no such tune in this group.' }]
       })
   }
+  const readyManifest = async (takeId: string): Promise<PieceManifest> => {
+    const manifest = await takes.manifest(takeId)
+    // Says which of the two it is: no such take, or one that is still being read.
+    if (!manifest) await readyMedia(takeId)
+    if (!manifest) throw problem('not-ready')
+    return manifest as PieceManifest
+  }
   const readyMedia = async (takeId: string) => {
     const media = await takes.media(takeId)
     if (!media) throw problem('not-found')
@@ -280,7 +287,7 @@ export const createTakeService = (deps: Deps) => {
       return { file: storage.pathOf(takeId, { kind: 'peaks' }), mime: 'application/octet-stream', maxAgeSec: 0 }
     },
     pieces: async (takeId: string): Promise<PiecesManifest> => {
-      const manifest = (await readyMedia(takeId)).manifest as PieceManifest
+      const manifest = await readyManifest(takeId)
       return {
         ...manifest,
         pieces: manifest.pieces.map((piece, index) => ({
@@ -290,7 +297,7 @@ export const createTakeService = (deps: Deps) => {
       }
     },
     piece: async (takeId: string, index: number): Promise<FileAnswer> => {
-      const manifest = (await readyMedia(takeId)).manifest as PieceManifest
+      const manifest = await readyManifest(takeId)
       if (!manifest.pieces[index]) throw problem('not-found')
       return { file: storage.pathOf(takeId, { kind: 'piece', piece: index }), mime: manifest.mime, maxAgeSec: 0 }
     },
