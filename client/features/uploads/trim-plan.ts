@@ -39,7 +39,8 @@ export const trimArguments = ({ span, format }: TrimPlan, from: string, to: stri
   format === 'aac' ? 'aac' : 'libopus',
   '-b:a',
   `${trimFormats[format].kbps}k`,
-  ...(format === 'aac' ? ['-movflags', '+faststart'] : []),
+  // libopus outgrows the core's small stack at its usual 20 ms (ffmpegwasm issue 591, mended after 0.12.10).
+  ...(format === 'aac' ? ['-movflags', '+faststart'] : ['-frame_duration', '10']),
   to
 ]
 
