@@ -2,6 +2,7 @@
 import { randomUUID } from 'node:crypto'
 import { readFileSync } from 'node:fs'
 import { basename, join } from 'node:path'
+import type { Locator, Page } from 'playwright-core'
 import { expect } from 'vitest'
 import { demoGroup } from '../../../seeds/01_personas.ts'
 import { ffmpeg, pluckedBass } from '../../support/media.ts'
@@ -13,6 +14,13 @@ export const pluck = (folder: string, name: string, seconds: number, ...options:
   ffmpeg(...pluckedBass(seconds), ...options, path)
   return path
 }
+
+/** In the list of what was sent: the way to the desk of a take that has been read. */
+export const openLink = (page: Page, title: string): Locator =>
+  page
+    .getByRole('listitem')
+    .filter({ hasText: title })
+    .getByRole('link', { name: /^Open it/ })
 
 export const bringTake = async (
   house: House,

@@ -75,6 +75,14 @@ export const useVisits = (browserArgs: string[] = []): Visits => {
     }
     await Promise.all(contexts.map((one) => one.close()))
     const left = troubles.filter((trouble) => !expected.some((pattern) => pattern.test(trouble)))
+    if (shots) {
+      // Told at once: the run's own account comes only at its end.
+      const words = [
+        ...(context.task.result?.errors ?? []).map(({ message, stack }) => `${message}\n${stack}`),
+        ...left
+      ]
+      process.stderr.write(words.map((each) => `! ${context.task.name}: ${each}\n`).join(''))
+    }
     contexts = []
     troubles = []
     expected = []
