@@ -1,5 +1,5 @@
 import { spawn, type ChildProcess } from 'node:child_process'
-import { cpSync, existsSync, readFileSync, symlinkSync, writeFileSync } from 'node:fs'
+import { cpSync, existsSync, readFileSync, symlinkSync, writeFileSync, mkdirSync } from 'node:fs'
 import net from 'node:net'
 import path from 'node:path'
 import { afterEach, describe, expect, it } from 'vitest'
@@ -123,6 +123,8 @@ describe('npm start', () => {
     expect(await once()).toBe(true)
     expect(existsSync(path.join(project, 'storage/build/index.html'))).toBe(true)
     expect(await once()).toBe(false)
+    // git keeps no empty folder, so the miniature may come without this one.
+    mkdirSync(path.join(project, 'client'), { recursive: true })
     writeFileSync(path.join(project, 'client/new.ts'), 'export {}\n')
     expect(await once()).toBe(true)
   })
