@@ -61,6 +61,17 @@ export const staleKeys = ({ type, groupId, takeId, objectId }: GroupEvent): Quer
   }
 }
 
+/** How many on the page follow each group. */
+const followers = new Map<string, number>()
+let turn: Promise<unknown> = Promise.resolve()
+
+/** Follows and unfollows wait for the answer to the one before: the server may take them up in another order. */
+const inTurn = <T>(work: () => Promise<T>): Promise<T> => {
+  const done = turn.then(work)
+  turn = done.catch(() => undefined)
+  return done
+}
+
 interface Deps {
   client: QueryClient
   groupId: string
@@ -72,6 +83,7 @@ interface Deps {
 export const followGroup = ({ client, groupId, onEvent }: Deps): Scope => {
   const scope = createScope()
   const socket = roomSocket()
+  followers.set(groupId, (followers.get(groupId) ?? 0) + 1)
   /** Everything up to here has been taken in; null until the first follow. */
   let seen: number | null = null
   let isCatchingUp = false
@@ -113,7 +125,7 @@ export const followGroup = ({ client, groupId, onEvent }: Deps): Scope => {
   }
   const follow = async (): Promise<void> => {
     try {
-      const { lastSeq } = await ask('group:follow', { groupId })
+      const { lastSeq } = await inTurn(() => ask('group:follow', { groupId }))
       if (isOver) return
       if (seen === null) seen = lastSeq
       else if (lastSeq > seen) await catchUp()
@@ -132,7 +144,11 @@ export const followGroup = ({ client, groupId, onEvent }: Deps): Scope => {
   scope.add(() => {
     socket.off('group:event', handleEvent)
     socket.off('connect', handleConnect)
-    if (socket.connected) void ask('group:unfollow', { groupId }).catch(() => undefined)
+    followers.set(groupId, (followers.get(groupId) ?? 1) - 1)
+    // Asked only when its turn comes: by then the next page may follow the same group.
+    void inTurn(async () => {
+      if (socket.connected && followers.get(groupId) === 0) await ask('group:unfollow', { groupId })
+    }).catch(() => undefined)
   })
   if (socket.connected) void follow()
   else socket.connect()
