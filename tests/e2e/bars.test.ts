@@ -49,9 +49,17 @@ it('lays bars from taps, moves a line by keys, undoes and redoes, and counts com
   expect(await comments(page).getByRole('article').first().getAttribute('aria-label')).toMatch(/bar|before/)
 
   const before = await lineSec(page, 3)
+  const laid = (
+    await visits.house.rows<{ revision: number }>('select revision from documents where take_id = $1', [take])
+  )[0]?.revision
   await lineOf(page, 3).focus()
   for (let step = 0; step < 3; step += 1) await page.keyboard.press('ArrowRight')
   await soon(async () => expect(await lineSec(page, 3)).toBeCloseTo(before + 0.03, 2))
+  // What has not been sent yet is taken back without a trace; here everything has arrived.
+  const revision = async () =>
+    (await visits.house.rows<{ revision: number }>('select revision from documents where take_id = $1', [take]))[0]
+      ?.revision
+  await soon(async () => expect(await revision()).toBe(Number(laid) + 3))
   await page.getByRole('button', { name: 'Undo the last change of the bars' }).click()
   await soon(async () => expect(await lineSec(page, 3)).toBeCloseTo(before + 0.02, 2))
   await page.getByRole('button', { name: 'Do it again' }).click()
@@ -74,10 +82,6 @@ it('lays bars from taps, moves a line by keys, undoes and redoes, and counts com
   await page.getByRole('tab', { name: 'Counting' }).click()
   await page.getByRole('button', { name: 'Half as many beats' }).click()
   await soon(async () => expect(await said.getAttribute('aria-label')).not.toMatch(/bars 4 to 5/))
-  const revisions = await visits.house.rows<{ revision: number }>('select revision from documents where take_id = $1', [
-    take
-  ])
-  expect(revisions).toHaveLength(1)
 })
 
 it('names the bar of a chart that cannot be read, and keeps what is mended', async () => {
@@ -93,5 +97,5 @@ it('names the bar of a chart that cannot be read, and keeps what is mended', asy
   await text.fill('[A]\n| Dm7 | Em7b5 A7 | % | N.C. |')
   await page.getByText('4 bars in 1 section, all of them can be read.').waitFor()
   await page.getByRole('button', { name: 'Keep this chart' }).click()
-  await page.getByRole('button', { name: /^Bar 2 of A: .*then/ }).waitFor()
+  await page.getByRole('button', { name: /^Bar 2 of .*A: .*then/ }).first().waitFor()
 })
