@@ -97,5 +97,8 @@ it('names the bar of a chart that cannot be read, and keeps what is mended', asy
   await text.fill('[A]\n| Dm7 | Em7b5 A7 | % | N.C. |')
   await page.getByText('4 bars in 1 section, all of them can be read.').waitFor()
   await page.getByRole('button', { name: 'Keep this chart' }).click()
-  await page.getByRole('button', { name: /^Bar 2 of .*A: .*then/ }).first().waitFor()
+  await page
+    .getByRole('button', { name: /^Bar 2 of .*A: .*then/ })
+    .first()
+    .waitFor()
 })

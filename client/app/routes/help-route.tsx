@@ -98,7 +98,9 @@ export function HelpRoute() {
   )
 }
 
-const Words = ({ children }: { children: ReactNode }) => <div className="grid max-w-prose grid-cols-[minmax(0,1fr)] gap-3 break-words">{children}</div>
+const Words = ({ children }: { children: ReactNode }) => (
+  <div className="grid max-w-prose grid-cols-[minmax(0,1fr)] gap-3 break-words">{children}</div>
+)
 
 const Licence = ({ of }: { of: 'lexend' | 'academico' | 'bravura' }) => (
   <a href={`/fonts/OFL-${of}.txt`}>licence of {of[0]?.toUpperCase() + of.slice(1)}</a>

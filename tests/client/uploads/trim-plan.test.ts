@@ -35,7 +35,9 @@ describe('trimArguments', () => {
   // ffmpeg's documentation: -ss and -t before -i limit what is read of the input.
   it('cuts while reading and drops the tags', () => {
     const words = trimArguments({ span: { startSec: 1.5, endSec: 4 }, format: 'opus' }, 'in', 'out').join(' ')
-    expect(words).toBe('-ss 1.500 -t 2.500 -i in -vn -map 0:a:0 -map_metadata -1 -c:a libopus -b:a 128k -frame_duration 10 out')
+    expect(words).toBe(
+      '-ss 1.500 -t 2.500 -i in -vn -map 0:a:0 -map_metadata -1 -c:a libopus -b:a 128k -frame_duration 10 out'
+    )
   })
   it('cuts nothing off when the whole is wanted', () => {
     expect(trimArguments({ span: null, format: 'aac' }, 'in', 'out')[0]).toBe('-i')
