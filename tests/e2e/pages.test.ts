@@ -3,12 +3,12 @@ import { randomUUID } from 'node:crypto'
 import { mkdtempSync, rmSync } from 'node:fs'
 import { tmpdir } from 'node:os'
 import { join } from 'node:path'
-import { afterAll, describe, expect, it } from 'vitest'
+import { afterAll, describe, it } from 'vitest'
 import type { Page } from 'playwright-core'
 import { demoGroup } from '../../seeds/01_personas.ts'
 import { demoId } from '../../seeds/02_demo_group.ts'
 import { pluck } from './support/bring.ts'
-import { bar, comments, deskIsReady, markBars, openDesk, takePath, transport } from './support/desk.ts'
+import { comments, deskIsReady, markBars, openDesk, takePath, transport } from './support/desk.ts'
 import { expectNoViolations, expectToFit } from './support/look.ts'
 import { useVisits } from './support/visit.ts'
 
@@ -137,8 +137,7 @@ describe('pages without faults that axe finds, by day and night, 360 and 320 px 
     await look(page, 'desk in a session')
     await page.getByRole('button', { name: 'Session', exact: true }).click()
     await expectNoViolations(page, 'menu of the session')
-    expect(await bar(page, 5).count()).toBe(1)
-  })
+  }, 240_000)
 
   it('at the desk of a take without bars', async () => {
     const page = await visits.visit('mara')

@@ -69,7 +69,7 @@ export function HelpRoute() {
         </PageSection>
         <PageSection title="Parts made by others">
           <Words>
-            <ul className="grid list-disc gap-1.5 pl-5">
+            <ul className="grid list-disc grid-cols-[minmax(0,1fr)] gap-1.5 pl-5">
               <li>
                 Text is set in <b className="font-semibold">Lexend</b>; the musical signs are redrawn from{' '}
                 <b className="font-semibold">Academico</b> and <b className="font-semibold">Bravura</b>. All three are
