@@ -50,7 +50,7 @@ export default defineConfig({
       project('api', { fileParallelism: false, testTimeout: 30_000, hookTimeout: 60_000 }),
       project('realtime', { fileParallelism: false, testTimeout: 30_000, hookTimeout: 60_000 }),
       project('media', { fileParallelism: false, testTimeout: 60_000, hookTimeout: 60_000 }),
-      project('e2e', { fileParallelism: false, testTimeout: 120_000, hookTimeout: 180_000 })
+      project('e2e', { fileParallelism: false, testTimeout: 300_000, hookTimeout: 300_000 })
     ]
   }
 })
