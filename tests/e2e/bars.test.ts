@@ -46,7 +46,7 @@ it('lays bars from taps, moves a line by keys, undoes and redoes, and counts com
   await bar(page, 5).first().waitFor()
   const tapped = await lineSec(page, 3)
   process.stderr.write(`bar 3 tapped at 6.0 s stands at ${tapped} s\n`)
-  expect(await comments(page).getByRole('article').first().getAttribute('aria-label')).toMatch(/bar|before/)
+  expect(await comments(page).getByRole('article').first().getAttribute('aria-label')).toMatch(/bar|pick-up/)
 
   const before = await lineSec(page, 3)
   const laid = (
