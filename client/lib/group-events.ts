@@ -32,6 +32,8 @@ export const staleKeys = ({ type, groupId, takeId, objectId }: GroupEvent): Quer
         routeKey(groupRoutes.people, group),
         routeKey(groupRoutes.get, group),
         routeKey(groupRoutes.list),
+        // Whoever joined has used one up.
+        routeKey(invitationRoutes.list, group),
         ...lists
       ]
     case 'invitation:changed':
@@ -138,11 +140,19 @@ export const followGroup = ({ client, groupId, onEvent }: Deps): Scope => {
     if (event.seq === seen + 1 && !isCatchingUp) take(event)
     else void catchUp()
   }
+  /** No longer let in: what was seen is put away, and what is on the screen is asked for again and refused. */
+  const handleClosed = (closed: { groupId: string }): void => {
+    if (closed.groupId !== groupId) return
+    client.removeQueries({ type: 'inactive' })
+    void client.invalidateQueries()
+  }
   const handleConnect = (): void => void follow()
   socket.on('group:event', handleEvent)
+  socket.on('group:closed', handleClosed)
   socket.on('connect', handleConnect)
   scope.add(() => {
     socket.off('group:event', handleEvent)
+    socket.off('group:closed', handleClosed)
     socket.off('connect', handleConnect)
     followers.set(groupId, (followers.get(groupId) ?? 1) - 1)
     // Asked only when its turn comes: by then the next page may follow the same group.

@@ -28,6 +28,20 @@ const settle = async (): Promise<void> => {
 beforeEach(() => void asked.splice(0))
 
 describe('followGroup', () => {
+  it('asks again for everything when this group is closed to the person, and for nothing when another is', async () => {
+    const client = new QueryClient()
+    const again = vi.spyOn(client, 'invalidateQueries')
+    const scope = followGroup({ client, groupId })
+    const closed = socket.on.mock.calls.findLast(([name]) => name === 'group:closed')?.[1] as (told: object) => void
+    closed({ groupId: 'another' })
+    expect(again).not.toHaveBeenCalled()
+    closed({ groupId })
+    expect(again).toHaveBeenCalledWith()
+    await settle()
+    scope.dispose()
+    await settle()
+  })
+
   it('stays in the group while one page takes over from another', async () => {
     const first = follow()
     await settle()
