@@ -24,9 +24,12 @@ export const roomSocket = (): RoomSocket => {
   return shared
 }
 
+/** Hangs up; the next connection is a new handshake with whoever is signed in then. What listens to the socket stays. */
 export const closeSocket = (): void => {
-  shared?.disconnect()
-  shared = null
+  if (!shared) return
+  shared.disconnect()
+  // What one person had not sent yet is not said in the next one's name.
+  shared.sendBuffer.length = 0
 }
 
 /** Sends an event and waits for its acknowledgement; throws ApiProblem. */

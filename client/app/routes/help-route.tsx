@@ -82,7 +82,7 @@ export function HelpRoute() {
                 of Plumbline; lines, tunes and people of the demo are invented.
               </li>
               <li>
-                To play a file that your browser cannot read, Plumbline loads{' '}
+                When you ask to trim or shrink a recording before sending it, Plumbline loads{' '}
                 <b className="font-semibold">@ffmpeg/core</b> 0.12.10, a build of FFmpeg under the GNU General Public
                 License 2 or later, as a file of its own. Its source is at{' '}
                 <a href="https://github.com/ffmpegwasm/ffmpeg.wasm" rel="noreferrer">
