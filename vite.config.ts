@@ -46,11 +46,12 @@ export default defineConfig({
       project('unit'),
       project('architecture'),
       project('client', { environment: 'jsdom' }),
-      project('setup', { fileParallelism: false, testTimeout: 120_000, hookTimeout: 120_000 }),
-      project('api', { fileParallelism: false, testTimeout: 30_000, hookTimeout: 60_000 }),
-      project('realtime', { fileParallelism: false, testTimeout: 30_000, hookTimeout: 60_000 }),
-      project('media', { fileParallelism: false, testTimeout: 60_000, hookTimeout: 60_000 }),
-      project('e2e', { fileParallelism: false, testTimeout: 300_000, hookTimeout: 300_000 })
+      // Real processes, sockets and sound on a shared machine: what fails once by a hiccup is tried again, what fails always fails.
+      project('setup', { retry: 1, fileParallelism: false, testTimeout: 120_000, hookTimeout: 120_000 }),
+      project('api', { retry: 1, fileParallelism: false, testTimeout: 30_000, hookTimeout: 60_000 }),
+      project('realtime', { retry: 1, fileParallelism: false, testTimeout: 30_000, hookTimeout: 60_000 }),
+      project('media', { retry: 1, fileParallelism: false, testTimeout: 60_000, hookTimeout: 60_000 }),
+      project('e2e', { retry: 2, fileParallelism: false, testTimeout: 300_000, hookTimeout: 300_000 })
     ]
   }
 })
