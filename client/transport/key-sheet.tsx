@@ -1,7 +1,8 @@
 import { Checkbox } from '@client/ui/checkbox'
 import { Dialog } from '@client/ui/dialog'
 import { hearingNote } from './hearing'
-import { shownKey, type KeyBinding } from './keys'
+import { KeyList } from './key-list'
+import type { KeyBinding } from './keys'
 
 export interface KeySheetProps {
   map: readonly KeyBinding[]
@@ -15,20 +16,7 @@ export interface KeySheetProps {
 export function KeySheet({ map, areOff, onOff, onClose }: KeySheetProps) {
   return (
     <Dialog title="Keys and pedals" onClose={onClose}>
-      <dl className="grid grid-cols-[auto_minmax(0,1fr)] gap-x-4 gap-y-1.5">
-        {map.map(({ action, label, keys }) => (
-          <div key={action} className="col-span-2 grid grid-cols-subgrid items-baseline">
-            <dt className="flex flex-wrap gap-1">
-              {keys.map((key) => (
-                <kbd key={key} className="rounded border border-pencil px-1.5 font-sans text-sm whitespace-nowrap">
-                  {shownKey(key)}
-                </kbd>
-              ))}
-            </dt>
-            <dd>{label}</dd>
-          </div>
-        ))}
-      </dl>
+      <KeyList map={map} />
       <p className="mt-4 text-sm text-pencil">
         A pedal that sends page keys goes back a bar with one foot and plays or pauses with the other. Keys rest while
         you write.

@@ -4,7 +4,7 @@ import { copyFile, mkdir, open, readdir, rename, rm, stat } from 'node:fs/promis
 import { dirname, isAbsolute, join, relative, resolve } from 'node:path'
 import type { Readable } from 'node:stream'
 import { storageError } from './faults.ts'
-import { peaksFile, piecesFolder, type IngestResult } from './ingest.ts'
+import { peaksFile, piecesFolder } from './ingest.ts'
 import { renditionFile } from './commands.ts'
 import { sweepOrphans } from './work-folder.ts'
 
@@ -86,12 +86,6 @@ const fileOfPart = (part: TakePart): string[] => {
   if (part.kind === 'piece') return ['media', piecesFolder, pieceFile(part.piece)]
   if (part.kind === 'original') return ['original']
   return ['media', part.kind === 'rendition' ? renditionFile : peaksFile]
-}
-
-/** The part of a take that a result's piece file stands for; none for a name that is not in the manifest. */
-export const partOfPieceFile = (result: IngestResult, file: string): TakePart | undefined => {
-  const piece = result.manifest.pieces.findIndex((one) => one.file === file)
-  return piece < 0 ? undefined : { kind: 'piece', piece }
 }
 
 const openStored = async (path: string): Promise<StoredFile | undefined> => {

@@ -1,7 +1,8 @@
 import type { ReactNode } from 'react'
 import { AccountMenu } from '@client/features/account/account-menu'
 import { hearingNote } from '@client/transport/hearing'
-import { defaultKeyMap, shownKey } from '@client/transport/keys'
+import { KeyList } from '@client/transport/key-list'
+import { defaultKeyMap } from '@client/transport/keys'
 import { AppShell } from '@client/ui/app-shell'
 import { Page, PageSection } from '@client/ui/page'
 
@@ -41,7 +42,7 @@ export function HelpRoute() {
           </Words>
         </PageSection>
         <PageSection title="Keys and pedals">
-          <Keys />
+          <KeyList map={defaultKeyMap} />
           <p className="max-w-prose text-sm text-pencil">
             They work on the screen of a take. A pedal that sends page keys goes back a bar with one foot and plays or
             pauses with the other. Keys rest while you write, and can be switched off on the sheet that ? opens.
@@ -105,22 +106,3 @@ const Words = ({ children }: { children: ReactNode }) => (
 const Licence = ({ of }: { of: 'lexend' | 'academico' | 'bravura' }) => (
   <a href={`/fonts/OFL-${of}.txt`}>licence of {of[0]?.toUpperCase() + of.slice(1)}</a>
 )
-
-function Keys() {
-  return (
-    <dl className="grid max-w-prose grid-cols-[auto_minmax(0,1fr)] gap-x-5 gap-y-1.5">
-      {defaultKeyMap.map(({ action, label, keys }) => (
-        <div key={action} className="col-span-2 grid grid-cols-subgrid items-baseline">
-          <dt className="flex flex-wrap gap-1">
-            {keys.map((key) => (
-              <kbd key={key} className="rounded border border-pencil px-1.5 font-sans text-sm whitespace-nowrap">
-                {shownKey(key)}
-              </kbd>
-            ))}
-          </dt>
-          <dd>{label}</dd>
-        </div>
-      ))}
-    </dl>
-  )
-}
