@@ -1,6 +1,7 @@
 // The plain engine: an HTMLAudioElement with its pitch kept. Good for listening and slow listening; its loops come
 // round a little late (the element's own seek), it acts at once and cannot shift pitch.
 import { createScope } from '@client/lib/scope'
+import { plainAids } from '@shared/audio/listening'
 import type { Sec } from '@shared/units'
 import { createEmitter } from './emitter'
 import { createLoudnessGraph, dbToGain, volumeToGain, type LoudnessGraph } from './loudness-graph'
@@ -231,7 +232,7 @@ export const createMediaElementPlayer = (deps: MediaElementDeps = {}): Player =>
   })
 
   const player: Player = {
-    capabilities: { pitch: false, schedule: false },
+    capabilities: { pitch: false, schedule: false, aids: false, clicks: false },
     get state() {
       return state
     },
@@ -245,6 +246,7 @@ export const createMediaElementPlayer = (deps: MediaElementDeps = {}): Player =>
       return rate
     },
     semitones: 0,
+    aids: plainAids,
     get volume() {
       return volume
     },
@@ -356,6 +358,9 @@ export const createMediaElementPlayer = (deps: MediaElementDeps = {}): Player =>
       applyRate()
     },
     setPitch: () => {},
+    setAids: () => {},
+    setClicks: () => {},
+    setCountIn: () => {},
     setVolume: (next) => {
       volume = Math.max(0, Math.min(1, next))
       applyVolume()

@@ -1,5 +1,7 @@
 // The one interface through which timeline, comments and the listening session see sound. Engines implement it.
 import type { Sec } from '@shared/units'
+import type { Aids } from '@shared/audio/listening'
+import type { SpeedLadder } from '@shared/practice/ladder'
 import type { Span } from '@shared/timing/types'
 
 export type PlayerState = 'empty' | 'loading' | 'ready' | 'playing' | 'failed'
@@ -8,14 +10,33 @@ export interface PlayerSource {
   /** Address of the rendition (or an object URL before anything is kept). */
   url: string
   durationSec: Sec
+  /** Address of the manifest of its pieces; an engine that can do without plays `url`. */
+  piecesUrl?: string
   /** Loudness gain to apply, in dB (EBU R128 towards the moderate level). */
   gainDb?: number
 }
 
 export interface PlayerLoop {
   span: Span
+  /** Fades the ends of every pass in and out; 0 or none is a cut as short as can be without a click. */
   fadeSec?: Sec
-  restBeats?: number
+  /** Silence between two passes, as seconds of take: at half speed it lasts twice as long. */
+  restSec?: Sec
+  /** Gets faster pass by pass. While it is there the loop decides the rate. */
+  ladder?: SpeedLadder
+}
+
+/** A click to come: a place in the take and how strongly it is struck. */
+export interface GridClick {
+  sec: Sec
+  /** 2 the bar's first, 1 a beat, 0 a subdivision. */
+  accent: 0 | 1 | 2
+}
+
+/** Clicks before the start: how long before it, in seconds of real time, rising towards it (negative). */
+export interface CountIn {
+  leadSec: Sec
+  clicks: { atSec: Sec; accent: 0 | 1 | 2 }[]
 }
 
 export interface PlayerEvents {
@@ -23,6 +44,9 @@ export interface PlayerEvents {
   /** A jump: seek, loop turn, new source. `positionSec` is where it plays from now. */
   jump: { positionSec: Sec }
   rate: { rate: number }
+  pitch: { semitones: number }
+  aids: { aids: Aids }
+  clicks: { isOn: boolean }
   loop: { loop: PlayerLoop | null }
   /** The loop came round; `count` passes are done since the loop was set. */
   turn: { count: number }
@@ -42,6 +66,10 @@ export interface PlayerCapabilities {
   pitch: boolean
   /** Can act at a moment to come (`at`). */
   schedule: boolean
+  /** Low focus, channels, fine tune and the octave switch. */
+  aids: boolean
+  /** Clicks, counting in, rests between passes. */
+  clicks: boolean
 }
 
 /** `at` is a time of `clock()`; an engine that cannot schedule acts at once. */
@@ -55,6 +83,7 @@ export interface Player {
   readonly semitones: number
   readonly volume: number
   readonly loop: PlayerLoop | null
+  readonly aids: Aids
   /** The element wavesurfer follows. */
   readonly media: HTMLMediaElement
   /** Seconds on the engine's own clock. */
@@ -70,7 +99,12 @@ export interface Player {
   /** A few percent faster or slower without being another speed: how listeners are kept together. 1 is none. */
   setTrim(factor: number): void
   setPitch(semitones: number, at?: Sec): void
+  setAids(aids: Aids): void
   setVolume(volume: number): void
+  /** Clicks laid along the take, rising; null is none. `level` 0-1. */
+  setClicks(clicks: readonly GridClick[] | null, level?: number): void
+  /** Asked at every start that a person makes, with the place and the rate; null starts at once. */
+  setCountIn(countIn: ((startSec: Sec, rate: number) => CountIn | null) | null): void
   setLoop(loop: PlayerLoop | null, at?: Sec): void
   on<E extends keyof PlayerEvents>(event: E, listener: (payload: PlayerEvents[E]) => void): () => void
   dispose(): void

@@ -1,4 +1,5 @@
 // A player whose place is set by hand, and a document that keeps its edits as the server would.
+import { plainAids } from '@shared/audio/listening'
 import { applyAll } from '@shared/documents/merge'
 import { createBarMap } from '@shared/timing/bar-map'
 import { barMapDocument } from '@shared/timing/bar-map-document'
@@ -18,7 +19,7 @@ export interface FakePlayer extends Player {
 export const fakePlayer = (): { player: FakePlayer; controls: TransportControls; asked: string[] } => {
   const asked: string[] = []
   const player: FakePlayer = {
-    capabilities: { pitch: false, schedule: false },
+    capabilities: { pitch: false, schedule: false, aids: false, clicks: false },
     state: 'ready',
     durationSec: 120,
     heardPosition: 0,
@@ -26,6 +27,7 @@ export const fakePlayer = (): { player: FakePlayer; controls: TransportControls;
     semitones: 0,
     volume: 0.7,
     loop: null,
+    aids: plainAids,
     media: document.createElement('audio'),
     clock: () => 0,
     positionAt: () => player.heardPosition,
@@ -41,6 +43,9 @@ export const fakePlayer = (): { player: FakePlayer; controls: TransportControls;
     setPitch: () => undefined,
     setVolume: () => undefined,
     setTrim: () => undefined,
+    setAids: () => undefined,
+    setClicks: () => undefined,
+    setCountIn: () => undefined,
     setLoop: (loop) => {
       player.loop = loop
     },

@@ -1,4 +1,5 @@
 // A player that stands where it is put; jsdom has neither sound nor layout.
+import { plainAids } from '@shared/audio/listening'
 import { createEmitter } from '@client/transport/emitter'
 import type { Player, PlayerEvents } from '@client/transport/player'
 
@@ -11,7 +12,7 @@ export const createStillPlayer = (durationSec: number): StillPlayer => {
   let position = 0
   const seeks: number[] = []
   return {
-    capabilities: { pitch: false, schedule: false },
+    capabilities: { pitch: false, schedule: false, aids: false, clicks: false },
     state: 'ready',
     durationSec,
     get heardPosition() {
@@ -21,6 +22,7 @@ export const createStillPlayer = (durationSec: number): StillPlayer => {
     semitones: 0,
     volume: 0.7,
     loop: null,
+    aids: plainAids,
     media: document.createElement('audio'),
     clock: () => 0,
     positionAt: () => position,
@@ -34,6 +36,9 @@ export const createStillPlayer = (durationSec: number): StillPlayer => {
     },
     setRate: () => {},
     setTrim: () => {},
+    setAids: () => {},
+    setClicks: () => {},
+    setCountIn: () => {},
     setPitch: () => {},
     setVolume: () => {},
     setLoop: () => {},

@@ -90,7 +90,7 @@ describe('speed and pitch', () => {
   it('says that it cannot shift pitch, and does not', () => {
     player.setPitch(12)
     expect(player.semitones).toBe(0)
-    expect(player.capabilities).toEqual({ pitch: false, schedule: false })
+    expect(player.capabilities).toEqual({ pitch: false, schedule: false, aids: false, clicks: false })
   })
 })
 
