@@ -1,0 +1,200 @@
+// Where notes begin, for placing cuts: found from how much the energy of several bands rises over a time longer than the
+// period of the lowest string, so that the pulses of a low note are not taken for attacks. Energy-rise detection by bands
+// follows Klapuri (1999), "Sound onset detection by applying psychoacoustic knowledge"; the place is then read from the
+// envelope at a millisecond's grain.
+import { realFft } from '@shared/audio/stretch/fft'
+import type { SampleSource } from '@shared/audio/stretch/types'
+
+export interface Onset {
+  /** First frame of the attack, a moment early: here a new sound may begin. */
+  cut: number
+  /** Where the ear puts the note: half way up the attack. */
+  anchor: number
+  /** Sum of the bands' rises, octaves of energy. */
+  strength: number
+}
+
+export interface OnsetFinder {
+  /** Onsets whose cut lies in the half-open span, rising; null while the source has not got the frames. */
+  between(from: number, to: number): readonly Onset[] | null
+  /** Frames beyond an onset that finding it looks at. */
+  readonly reach: number
+}
+
+const edgesHz = [0, 120, 250, 500, 1000, 2000, 4000, 8000, 16000]
+const bandCount = edgesHz.length - 1
+const weights = [1, 1, 1, 1, 1, 1, 1, 0.7]
+/** Means before and after are taken over this long: two periods of the lowest string of a five-string bass (31 Hz). */
+const meanSec = 0.064
+/** No band's rise counts for more than this, octaves of energy. */
+const riseCap = 4
+/** Sum of rises from which on it is an onset. */
+const threshold = 3
+/** Two onsets are at least this far apart. */
+const apartSec = 0.03
+const chunkFrames = 64
+/** Energy below the loudest moment around by this much is taken for silence. */
+const floorRatio = 1e-5
+
+export const createOnsetFinder = (source: SampleSource): OnsetFinder => {
+  const { sampleRate, channels } = source
+  const size = 2 ** Math.round(Math.log2(sampleRate * 0.022))
+  const hop = size >> 2
+  const fft = realFft(size)
+  const window = new Float64Array(size).map((_, i) => 0.5 - 0.5 * Math.cos((2 * Math.PI * (i + 0.5)) / size))
+  const raw = Array.from({ length: channels }, () => new Float32Array(size + hop * (chunkFrames - 1)))
+  const input = new Float64Array(size)
+  const re = new Float64Array(size / 2 + 1)
+  const im = new Float64Array(size / 2 + 1)
+  const edges = edgesHz.map((hz) => Math.min(size / 2, Math.round((hz * size) / sampleRate)))
+  const span = Math.max(4, Math.round((meanSec * sampleRate) / hop))
+  const mean = new Float64Array(span).map((_, i) => Math.sin((Math.PI * (i + 0.5)) / span) ** 2)
+  const meanSum = mean.reduce((sum, one) => sum + one, 0)
+  const around = Math.round((0.4 * sampleRate) / hop)
+  const apart = Math.max(2, Math.round((apartSec * sampleRate) / hop))
+
+  const energies = new Map<number, Float64Array>()
+  const rises = new Map<number, number>()
+  const refined = new Map<number, Onset>()
+
+  /** Band energies of a chunk of frames; frame j is centred on sample j * hop. */
+  const chunk = (index: number): Float64Array | null => {
+    const known = energies.get(index)
+    if (known) return known
+    if (!source.read(index * chunkFrames * hop - size / 2, raw)) return null
+    const made = new Float64Array(chunkFrames * (bandCount + 1))
+    for (let j = 0; j < chunkFrames; j++) {
+      for (const data of raw) {
+        for (let i = 0; i < size; i++) input[i] = data[j * hop + i]! * window[i]!
+        fft.forward(input, re, im)
+        for (let b = 0; b < bandCount; b++) {
+          let sum = 0
+          for (let k = edges[b]!; k < edges[b + 1]!; k++) sum += re[k]! * re[k]! + im[k]! * im[k]!
+          made[j * (bandCount + 1) + b] = made[j * (bandCount + 1) + b]! + sum
+        }
+      }
+      let total = 0
+      for (let b = 0; b < bandCount; b++) total += made[j * (bandCount + 1) + b]!
+      made[j * (bandCount + 1) + bandCount] = total
+    }
+    // A few minutes are enough: what is sought again is reckoned again.
+    if (energies.size > 800) {
+      energies.clear()
+      rises.clear()
+      refined.clear()
+    }
+    energies.set(index, made)
+    return made
+  }
+
+  const riseAt = (j: number): number | null => {
+    const known = rises.get(j)
+    if (known !== undefined) return known
+    let loudest = 0
+    for (let i = j - around; i <= j + around; i++) {
+      const at = chunk(Math.floor(i / chunkFrames))
+      if (!at) return null
+      loudest = Math.max(loudest, at[(((i % chunkFrames) + chunkFrames) % chunkFrames) * (bandCount + 1) + bandCount]!)
+    }
+    let sum = 0
+    for (let b = 0; b < bandCount; b++) {
+      let before = 0
+      let after = 0
+      for (let i = 0; i < span; i++) {
+        const early = j - 1 - i
+        const late = j + 1 + i
+        const first = chunk(Math.floor(early / chunkFrames))!
+        const second = chunk(Math.floor(late / chunkFrames))!
+        before += first[(((early % chunkFrames) + chunkFrames) % chunkFrames) * (bandCount + 1) + b]! * mean[i]!
+        after += second[(((late % chunkFrames) + chunkFrames) % chunkFrames) * (bandCount + 1) + b]! * mean[i]!
+      }
+      const floor = loudest * floorRatio + 1e-9
+      const rise = Math.log2((after / meanSum + floor) / (before / meanSum + floor))
+      if (rise > 0.5) sum += weights[b]! * Math.min(riseCap, rise)
+    }
+    rises.set(j, sum)
+    return sum
+  }
+
+  // The place: a fine envelope of the sharpened signal around the coarse peak.
+  const grain = Math.max(8, Math.round(sampleRate * 0.0005))
+  const leadGrains = 100
+  const tailGrains = 90
+  const fine = new Float64Array(leadGrains + tailGrains)
+  const fineRaw = Array.from({ length: channels }, () => new Float32Array((leadGrains + tailGrains) * grain + 1))
+
+  const refine = (j: number, strength: number): Onset | null => {
+    const known = refined.get(j)
+    if (known) return known
+    const start = j * hop - leadGrains * grain
+    if (!source.read(start - 1, fineRaw)) return null
+    fine.fill(0)
+    for (const data of fineRaw) {
+      for (let g = 0; g < fine.length; g++) {
+        let sum = 0
+        for (let i = 0; i < grain; i++) {
+          const at = g * grain + i + 1
+          const sharp = data[at]! - 0.9 * data[at - 1]!
+          sum += sharp * sharp
+        }
+        fine[g] = fine[g]! + sum
+      }
+    }
+    // Two grains together, so that one zero crossing is no silence.
+    for (let g = fine.length - 1; g > 0; g--) fine[g] = Math.max(fine[g]!, fine[g - 1]!)
+    let peak = 0
+    let peakAt = leadGrains
+    for (let g = leadGrains - 40; g < leadGrains + 70; g++) {
+      if (fine[g]! > peak) {
+        peak = fine[g]!
+        peakAt = g
+      }
+    }
+    let calm = 0
+    for (let g = Math.max(0, peakAt - 95); g < peakAt - 30; g++) calm = Math.max(calm, fine[g]!)
+    calm = Math.min(calm, peak * 0.5)
+    let first = peakAt
+    const low = calm + 0.06 * (peak - calm)
+    while (first > Math.max(1, peakAt - 30) && fine[first - 1]! > low) first--
+    for (let g = Math.max(1, peakAt - 30); g < first; g++) {
+      if (fine[g]! > low) {
+        first = g
+        break
+      }
+    }
+    let middle = first
+    while (middle < peakAt && fine[middle]! < calm + 0.35 * (peak - calm)) middle++
+    const onset = { cut: start + (first - 2) * grain, anchor: start + middle * grain, strength }
+    refined.set(j, onset)
+    return onset
+  }
+
+  return {
+    reach: (span + around + chunkFrames) * hop + size,
+    between: (from, to) => {
+      const found: Onset[] = []
+      // The cut may lie beside the coarse peak by as much as the fine envelope looks.
+      const margin = Math.ceil((leadGrains * grain) / hop)
+      const firstFrame = Math.floor(from / hop) - margin
+      const lastFrame = Math.ceil(to / hop) + margin
+      for (let j = firstFrame; j <= lastFrame; j++) {
+        const rise = riseAt(j)
+        if (rise === null) return null
+        if (rise < threshold) continue
+        let isPeak = true
+        for (let i = 1; i <= apart && isPeak; i++) {
+          const before = riseAt(j - i)
+          const after = riseAt(j + i)
+          if (before === null || after === null) return null
+          isPeak = rise > before && rise >= after
+        }
+        if (!isPeak) continue
+        const onset = refine(j, rise)
+        if (!onset) return null
+        if (onset.cut >= from && onset.cut < to) found.push(onset)
+      }
+      found.sort((a, b) => a.cut - b.cut)
+      return found.filter((one, at) => at === 0 || one.cut - found[at - 1]!.cut > grain * 16)
+    }
+  }
+}

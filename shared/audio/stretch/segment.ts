@@ -1,0 +1,291 @@
+// One stretch of sound between two cuts. It starts as the recording itself (an attack is copied, not stretched) and goes on
+// as overlapping frames: each is taken near where the map wants it, at the place most like what was just heard (waveform
+// similarity, Verhelst & Roelands 1993, "WSOLA"), and what is left over is turned into phase partial by partial, so that
+// every partial goes on where the frame before it had it (phase locking by regions of influence, Laroche & Dolson 1999;
+// the angle comes from the frame's true predecessor in the recording, so no frequency has to be estimated).
+import { realFft, type RealFft } from '@shared/audio/stretch/fft'
+import type { SampleSource } from '@shared/audio/stretch/types'
+
+/** Tables and work space for one window length, shared by all segments of a stretcher. */
+export interface Bench {
+  size: number
+  hop: number
+  fft: RealFft
+  search: RealFft
+  window: Float64Array
+  synthesis: Float64Array
+}
+
+export const createBench = (size: number): Bench => {
+  const window = new Float64Array(size).map((_, i) => 0.5 - 0.5 * Math.cos((2 * Math.PI * i) / size))
+  // Four Hann-squared windows over each other make 1.5.
+  const synthesis = window.map((one) => one / 1.5)
+  return { size, hop: size >> 2, fft: realFft(size), search: realFft(size * 2), window, synthesis }
+}
+
+export interface SegmentPlan {
+  bench: Bench
+  source: SampleSource
+  /** Inner frame and source frame that belong together where it starts. */
+  innerAt: number
+  sourceAt: number
+  /** First inner frame that has to be whole. */
+  from: number
+  /** Inner frames after `innerAt` that are copied one to one. */
+  copied: number
+  /** Source frame that a frame's centre should have for an inner centre after the copied part. */
+  wanted(innerCentre: number): number
+  /** Source frame that no window may pass; asked anew for each frame. */
+  limit(wantedSource: number): number
+}
+
+export interface Segment {
+  readonly innerAt: number
+  readonly sourceAt: number
+  /** Makes everything before `upTo` whole; false when the source has not got it yet. */
+  produce(upTo: number): boolean
+  /** Adds frames [from, to) times the gain curve into `out` at `offset`. */
+  mix(out: readonly Float32Array[], offset: number, from: number, to: number, gain: (inner: number) => number): void
+  /** Source centre of the last frame, for looking at. */
+  readonly lastSource: number
+}
+
+export const createSegment = (plan: SegmentPlan): Segment => {
+  const { bench, source, innerAt, sourceAt } = plan
+  const { size, hop, fft, search, window, synthesis } = bench
+  const half = size >> 1
+  const bins = half + 1
+  const channels = source.channels
+
+  const made = Array.from({ length: channels }, () => new Float64Array(size * 2))
+  /** Inner frame of made[0]. */
+  let base = plan.from - (size - hop)
+  /** Start of the next frame's window. */
+  let next = base
+  let isChained = false
+  let lastSource = sourceAt
+
+  const spread = (length: number) => Array.from({ length: channels }, () => new Float64Array(length))
+  const spread32 = (length: number) => Array.from({ length: channels }, () => new Float32Array(length))
+  const raw = spread32(size)
+  const wide = spread32(size * 2)
+  const work = new Float64Array(size)
+  const wideWork = new Float64Array(size * 2)
+  const [yr, yi] = [spread(bins), spread(bins)]
+  const [xr, xi] = [spread(bins), spread(bins)]
+  const [pr, pi] = [spread(bins), spread(bins)]
+  const power = new Float64Array(bins)
+  const template = new Float64Array(size * 2)
+  const [tr, ti] = [new Float64Array(size + 1), new Float64Array(size + 1)]
+  const [sr, si] = [new Float64Array(size + 1), new Float64Array(size + 1)]
+
+  const analyse = (centre: number, re: Float64Array[], im: Float64Array[]): boolean => {
+    if (!source.read(centre - half, raw)) return false
+    for (let c = 0; c < channels; c++) {
+      const data = raw[c]!
+      for (let i = 0; i < size; i++) work[i] = data[i]! * window[i]!
+      fft.forward(work, re[c]!, im[c]!)
+    }
+    return true
+  }
+
+  const add = (at: number, channel: number, frame: Float64Array) => {
+    const target = made[channel]!
+    const offset = at - base
+    for (let i = 0; i < size; i++) target[offset + i] = target[offset + i]! + frame[i]! * synthesis[i]!
+  }
+
+  const makeRoom = (upTo: number) => {
+    const length = made[0]!.length
+    if (upTo - base <= length) return
+    // What lies more than a window back has been heard.
+    const shift = Math.max(0, next - size - base)
+    const needed = upTo - base - shift
+    for (let c = 0; c < channels; c++) {
+      const old = made[c]!
+      const fresh = needed > length ? new Float64Array(Math.max(needed, length * 2)) : old
+      fresh.set(old.subarray(shift))
+      if (fresh === old) old.fill(0, length - shift)
+      made[c] = fresh
+    }
+    base += shift
+  }
+
+  /** The place in [low, high] whose predecessor is most like the last frame. Null: not there yet. */
+  const mostAlike = (wanted: number, low: number, high: number): number | null => {
+    const count = high - low + 1
+    if (count <= 1) return low
+    const length = size + count - 1
+    if (!source.read(low - hop - half, wide)) return null
+    wideWork.fill(0)
+    for (let c = 0; c < channels; c++) {
+      const data = wide[c]!
+      for (let i = 0; i < length; i++) wideWork[i] = wideWork[i]! + data[i]!
+    }
+    // Energy of each candidate, by a running sum.
+    let energy = 1e-12
+    for (let i = 0; i < size; i++) energy += wideWork[i]! * wideWork[i]!
+    search.forward(template, tr, ti)
+    search.forward(wideWork, sr, si)
+    for (let k = 0; k <= size; k++) {
+      const r = sr[k]! * tr[k]! + si[k]! * ti[k]!
+      si[k] = si[k]! * tr[k]! - sr[k]! * ti[k]!
+      sr[k] = r
+    }
+    const likeness = new Float64Array(size * 2)
+    search.inverse(sr, si, likeness)
+    let templateEnergy = 1e-12
+    for (let i = 0; i < size; i++) templateEnergy += template[i]! * template[i]!
+    let best = low
+    let bestScore = -Infinity
+    const scale = (high - low) / 2 || 1
+    for (let d = 0; d < count; d++) {
+      const off = (low + d - wanted) / scale
+      const score = likeness[d]! / Math.sqrt(energy * templateEnergy) - 0.04 * off * off
+      if (score > bestScore) {
+        bestScore = score
+        best = low + d
+      }
+      const out = wideWork[d]!
+      const into = wideWork[d + size]!
+      energy = Math.max(1e-12, energy + into * into - out * out)
+    }
+    return best
+  }
+
+  /** Turns the frame in xr, xi so that each region goes on where the last frame had it. */
+  const turn = () => {
+    power.fill(0)
+    for (let c = 0; c < channels; c++) {
+      for (let k = 0; k < bins; k++) power[k] = power[k]! + xr[c]![k]! ** 2 + xi[c]![k]! ** 2
+    }
+    let start = 0
+    let k = 0
+    while (start < bins) {
+      // The next peak from here, then the valley after it.
+      let peak = start
+      for (k = start; k < bins; k++) {
+        const here = power[k]!
+        if (
+          here >= (power[k - 1] ?? 0) &&
+          here >= (power[k - 2] ?? 0) &&
+          here > (power[k + 1] ?? 0) &&
+          here > (power[k + 2] ?? 0)
+        ) {
+          peak = k
+          break
+        }
+      }
+      let end = bins
+      if (k < bins) {
+        let valley = peak + 1
+        for (let m = peak + 1; m < bins; m++) {
+          if (power[m]! < (power[valley] ?? Infinity)) valley = m
+          const isNextPeak =
+            m > peak + 2 &&
+            power[m]! >= power[m - 1]! &&
+            power[m]! >= power[m - 2]! &&
+            power[m]! > (power[m + 1] ?? 0) &&
+            power[m]! > (power[m + 2] ?? 0)
+          if (isNextPeak) {
+            end = Math.max(valley, peak + 1)
+            break
+          }
+        }
+      }
+      let r = 0
+      let m = 0
+      for (let c = 0; c < channels; c++) {
+        const [lr, li, qr, qi] = [yr[c]!, yi[c]!, pr[c]!, pi[c]!]
+        for (let b = start; b < end; b++) {
+          r += lr[b]! * qr[b]! + li[b]! * qi[b]!
+          m += li[b]! * qr[b]! - lr[b]! * qi[b]!
+        }
+      }
+      const length = Math.hypot(r, m)
+      const [ur, ui] = length > 1e-20 ? [r / length, m / length] : [1, 0]
+      for (let c = 0; c < channels; c++) {
+        const [ar, ai, br, bi] = [xr[c]!, xi[c]!, yr[c]!, yi[c]!]
+        for (let b = start; b < end; b++) {
+          br[b] = ar[b]! * ur - ai[b]! * ui
+          bi[b] = ar[b]! * ui + ai[b]! * ur
+        }
+      }
+      start = end
+    }
+  }
+
+  const copyFrame = (at: number): boolean => {
+    const from = sourceAt + (at - innerAt)
+    if (!source.read(from, raw)) return false
+    makeRoom(at + size)
+    template.fill(0)
+    for (let c = 0; c < channels; c++) {
+      const data = raw[c]!
+      for (let i = 0; i < size; i++) {
+        work[i] = data[i]! * window[i]!
+        template[i] = template[i]! + work[i]!
+      }
+      add(at, c, work)
+    }
+    lastSource = from + half
+    isChained = false
+    return true
+  }
+
+  const turnedFrame = (at: number): boolean => {
+    const centre = at + half
+    const wanted = plan.wanted(centre)
+    const highest = plan.limit(wanted) - half
+    const lowest = sourceAt + plan.copied
+    const reach = bench.hop * 0.8
+    const high = Math.max(Math.min(Math.round(wanted + reach), highest), Math.min(lowest, highest))
+    const low = Math.max(
+      Math.min(Math.round(wanted - reach), high),
+      Math.min(lowest, high),
+      high - 2 * Math.round(reach)
+    )
+    if (!isChained) {
+      // The last frame was a copy: its spectrum is the recording's there.
+      if (!analyse(lastSource, yr, yi)) return false
+    }
+    const best = mostAlike(wanted, low, high)
+    if (best === null || !analyse(best - hop, pr, pi) || !analyse(best, xr, xi)) return false
+    turn()
+    makeRoom(at + size)
+    template.fill(0)
+    for (let c = 0; c < channels; c++) {
+      fft.inverse(yr[c]!, yi[c]!, work)
+      for (let i = 0; i < size; i++) template[i] = template[i]! + work[i]!
+      add(at, c, work)
+    }
+    lastSource = best
+    isChained = true
+    return true
+  }
+
+  return {
+    innerAt,
+    sourceAt,
+    get lastSource() {
+      return lastSource
+    },
+    produce: (upTo) => {
+      while (next < upTo) {
+        const isCopy = next + half <= innerAt + plan.copied
+        if (!(isCopy ? copyFrame(next) : turnedFrame(next))) return false
+        next += hop
+      }
+      return true
+    },
+    mix: (out, offset, from, to, gain) => {
+      for (let c = 0; c < channels; c++) {
+        const data = made[c]!
+        const target = out[c]!
+        for (let i = from; i < to; i++) {
+          target[offset + i - from] = target[offset + i - from]! + data[i - base]! * gain(i)
+        }
+      }
+    }
+  }
+}
