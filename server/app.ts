@@ -12,6 +12,8 @@ import { accountRoutes } from '@shared/contracts/account'
 import { commentRoutes } from '@shared/contracts/comments'
 import { groupEventRoutes } from '@shared/contracts/group-events'
 import { groupRoutes, invitationRoutes, linkRoutes } from '@shared/contracts/groups'
+import { preferenceRoutes } from '@shared/contracts/preferences'
+import { savedLoopRoutes } from '@shared/contracts/saved-loops'
 import { sessionRoutes } from '@shared/contracts/sessions'
 import { siteRoutes } from '@shared/contracts/site'
 import { recordingRoutes, takeRoutes } from '@shared/contracts/takes'
@@ -45,7 +47,9 @@ import { createEventsRepo } from '@server/repositories/events.repo'
 import { createGroupsRepo } from '@server/repositories/groups.repo'
 import { createInvitationsRepo } from '@server/repositories/invitations.repo'
 import { createLinksRepo } from '@server/repositories/links.repo'
+import { createPreferencesRepo } from '@server/repositories/preferences.repo'
 import { createRecordingsRepo } from '@server/repositories/recordings.repo'
+import { createSavedLoopsRepo } from '@server/repositories/saved-loops.repo'
 import { createSessionsRepo } from '@server/repositories/sessions.repo'
 import { createTakesRepo } from '@server/repositories/takes.repo'
 import { createTunesRepo } from '@server/repositories/tunes.repo'
@@ -54,6 +58,8 @@ import { commentHandlers } from '@server/routes/comments.routes'
 import { documentHandlers } from '@server/routes/documents.routes'
 import { groupEventHandlers } from '@server/routes/group-events.routes'
 import { groupHandlers, invitationHandlers, linkHandlers } from '@server/routes/groups.routes'
+import { preferenceHandlers } from '@server/routes/preferences.routes'
+import { savedLoopHandlers } from '@server/routes/saved-loops.routes'
 import { sessionHandlers } from '@server/routes/sessions.routes'
 import { recordingHandlers, takeHandlers } from '@server/routes/takes.routes'
 import { tuneHandlers } from '@server/routes/tunes.routes'
@@ -64,7 +70,9 @@ import { createGroupEventService } from '@server/services/group-events.service'
 import { createGroupService } from '@server/services/groups.service'
 import { createInvitationService } from '@server/services/invitations.service'
 import { createLinkService } from '@server/services/links.service'
+import { createPreferenceService } from '@server/services/preferences.service'
 import { createRecordingService } from '@server/services/recordings.service'
+import { createSavedLoopService } from '@server/services/saved-loops.service'
 import { createSessionService } from '@server/services/sessions.service'
 import { createTakeService } from '@server/services/takes.service'
 import { createTuneService } from '@server/services/tunes.service'
@@ -126,6 +134,8 @@ export const buildApp = async ({ config, log, now, limitScale = 1, bounds: given
   })
   const recordings = createRecordingService({ db, recordings: createRecordingsRepo(db), takes, storage, bounds })
   const comments = createCommentService({ db, comments: createCommentsRepo(db), takes: takesRepo, events })
+  const savedLoops = createSavedLoopService({ db, savedLoops: createSavedLoopsRepo(db), takes: takesRepo })
+  const preferences = createPreferenceService({ preferences: createPreferencesRepo(db) })
   const groupEvents = createGroupEventService({ events, access: accessRepo })
   const audibleSessions = async (userId: string, takeIds: string[]) => {
     const audible = new Map<string, ReadonlySet<Relation>>()
@@ -183,6 +193,7 @@ export const buildApp = async ({ config, log, now, limitScale = 1, bounds: given
     denied: (actor, _def, asker) => accounts.denied(actor, asker)
   })
   serve(api, accountRoutes, accountHandlers({ accounts, limits: rates }))
+  serve(api, preferenceRoutes, preferenceHandlers(preferences))
   serve(api, groupRoutes, groupHandlers(groups))
   serve(api, invitationRoutes, invitationHandlers(invitations, rates))
   serve(api, linkRoutes, linkHandlers(links))
@@ -209,6 +220,7 @@ export const buildApp = async ({ config, log, now, limitScale = 1, bounds: given
   )
   serve(api, recordingRoutes, recordingHandlers(recordings))
   serve(api, commentRoutes, commentHandlers(comments))
+  serve(api, savedLoopRoutes, savedLoopHandlers(savedLoops))
   serve(api, sessionRoutes, sessionHandlers(sessions))
   api.all('/api/{*path}', () => {
     throw problem('not-found')

@@ -20,6 +20,11 @@ export const limits = {
   openRecordings: 20,
   takeNames: 100,
   commentsPerTake: 5000,
+  savedLoopName: 80,
+  /** Loops that one person keeps on one take. */
+  savedLoopsPerTake: 200,
+  keyName: 40,
+  keysPerAction: 6,
   jsonBytes: 512 * 1024,
   operationsPerEdit: 200,
   /** Invitation links live this long, days. */

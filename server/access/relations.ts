@@ -33,6 +33,10 @@ export const createRelations = (repo: AccessRepo) => {
       const row = await repo.tune(id)
       return row ? within(group(userId, row.group_id), row.created_by === userId) : stranger()
     },
+    savedLoop: async (userId, id) => {
+      const row = await repo.savedLoop(id)
+      return row ? heard(await within(take(userId, row.take_id), row.user_id === userId)) : stranger()
+    },
     comment: async (userId, id) => {
       const row = await repo.comment(id)
       return row ? heard(await within(take(userId, row.take_id), row.author_id === userId)) : stranger()

@@ -4,6 +4,7 @@ import type { CommentKind } from '@shared/contracts/comments'
 import type { GroupEventType } from '@shared/contracts/group-events'
 import type { TransportState } from '@shared/contracts/sessions'
 import type { Reach } from '@shared/contracts/takes'
+import type { SpeedLadder } from '@shared/practice/ladder'
 
 export interface UserRow {
   id: string
@@ -16,6 +17,8 @@ export interface UserRow {
   guardian_name: string | null
   guardian_consent_at: Date | null
   tap_lag_ms: number | null
+  /** Read through readPreferences only. */
+  preferences: object
   disabled_at: Date | null
   created_at: Date
   updated_at: Date
@@ -170,6 +173,19 @@ export interface ReplyRow {
   created_at: Date
   updated_at: Date
 }
+export interface SavedLoopRow {
+  id: string
+  take_id: string
+  user_id: string
+  name: string
+  start_sec: number
+  end_sec: number
+  rate: number | null
+  ladder: SpeedLadder | null
+  rest_beats: number
+  created_at: Date
+  updated_at: Date
+}
 export interface SessionRow {
   id: string
   group_id: string
@@ -206,6 +222,7 @@ declare module 'knex/types/tables.js' {
     document_edits: DocumentEditRow
     comments: CommentRow
     replies: ReplyRow
+    saved_loops: SavedLoopRow
     sessions: SessionRow
     session_people: SessionPersonRow
     seeded: { name: string; at: Date }

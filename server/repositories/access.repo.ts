@@ -64,6 +64,7 @@ export const createAccessRepo = (db: Db) => ({
       .join('comments', 'comments.id', 'replies.comment_id')
       .where('replies.id', id)
       .first('comments.take_id', 'replies.author_id'),
+  savedLoop: (id: string) => db('saved_loops').where({ id }).first('take_id', 'user_id'),
   session: (id: string) => db('sessions').where({ id }).first('take_id', 'started_by'),
   takeStanding: async (userId: string, takeId: string): Promise<TakeStanding | null> => {
     const result = await db.raw<{ rows: TakeStandingRow[] }>(

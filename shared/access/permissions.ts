@@ -2,7 +2,17 @@
 import type { Relation } from '@shared/access/relations'
 
 export type Resource =
-  'site' | 'group' | 'tune' | 'take' | 'comment' | 'reply' | 'invitation' | 'link' | 'session' | 'recording'
+  | 'site'
+  | 'group'
+  | 'tune'
+  | 'take'
+  | 'savedLoop'
+  | 'comment'
+  | 'reply'
+  | 'invitation'
+  | 'link'
+  | 'session'
+  | 'recording'
 
 export interface PermissionDef {
   resource: Resource
@@ -58,6 +68,10 @@ export const permissions = {
   'take:edit-bars': on('take', hearingWriters, knowsTake),
   'take:comment': on('take', hearingWriters, knowsTake),
   'take:session': on('take', hearingWriters, knowsTake),
+  'take:practise': on('take', hearing, knowsTake),
+
+  'saved-loop:change': on('savedLoop', ['author']),
+  'saved-loop:delete': on('savedLoop', ['author']),
 
   'comment:edit': on('comment', ['author'], hearing),
   'comment:delete': on('comment', ['author', 'takeOwner', 'owner'], hearing),

@@ -4,7 +4,9 @@ import { barMapRoutes } from '@shared/contracts/bar-maps'
 import { commentRoutes } from '@shared/contracts/comments'
 import { groupEventRoutes } from '@shared/contracts/group-events'
 import { groupRoutes, invitationRoutes, linkRoutes } from '@shared/contracts/groups'
+import { preferenceRoutes } from '@shared/contracts/preferences'
 import type { RouteDef } from '@shared/contracts/route'
+import { savedLoopRoutes } from '@shared/contracts/saved-loops'
 import { sessionRoutes } from '@shared/contracts/sessions'
 import { siteRoutes } from '@shared/contracts/site'
 import { recordingRoutes, takeRoutes } from '@shared/contracts/takes'
@@ -13,6 +15,7 @@ import { chartRoutes, tuneRoutes } from '@shared/contracts/tunes'
 export const registry = {
   site: siteRoutes,
   account: accountRoutes,
+  preferences: preferenceRoutes,
   groups: groupRoutes,
   invitations: invitationRoutes,
   links: linkRoutes,
@@ -23,6 +26,7 @@ export const registry = {
   recordings: recordingRoutes,
   barMaps: barMapRoutes,
   comments: commentRoutes,
+  savedLoops: savedLoopRoutes,
   sessions: sessionRoutes
 } as const
 

@@ -47,6 +47,8 @@ const rows: Record<string, Row> = {
   'site.app': {},
   'account.me': {},
   'account.update': { body: () => ({ tapLagMs: 12 }) },
+  'preferences.get': {},
+  'preferences.change': { body: () => ({ volume: 0.4 }) },
   'account.signUp': {
     endsSignIn: true,
     body: (asker) => ({
@@ -169,6 +171,12 @@ const rows: Record<string, Row> = {
   'comments.reply': { body: () => ({ ...one(), text: 'The second.' }) },
   'comments.updateReply': { body: () => ({ text: 'The third.' }) },
   'comments.removeReply': { isSpent: true },
+  'savedLoops.list': {},
+  'savedLoops.create': {
+    body: () => ({ ...one(), name: 'The turnaround', span, rate: 0.5, ladder: null, restBeats: 0 })
+  },
+  'savedLoops.change': { body: () => ({ name: 'The last four' }) },
+  'savedLoops.remove': { isSpent: true },
   'sessions.live': {},
   'sessions.start': { body: one },
   'sessions.get': {},

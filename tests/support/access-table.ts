@@ -57,6 +57,7 @@ const table: Record<Permission, string> = {
   'take:edit-bars': 'ahh hhhr +++r+r h',
   'take:comment': 'ahh hhhr +++r+r h',
   'take:session': 'ahh hhhr +++r+r h',
+  'take:practise': 'ahh hhhr ++++++ h',
 
   // Roles and authorship below count only together with hearing the take: the server drops them otherwise.
   'comment:edit': 'ahh hhhh rrrrrr +',
@@ -65,6 +66,10 @@ const table: Record<Permission, string> = {
   'comment:reply': 'ahh hhhh +++r+r h',
   'reply:edit': 'ahh hhhh rrrrrr +',
   'reply:delete': 'ahh hhh+ +rrrrr +',
+
+  // Nobody but its keeper is ever told that it is there.
+  'saved-loop:change': 'ahh hhhh hhhhhh +',
+  'saved-loop:delete': 'ahh hhhh hhhhhh +',
 
   'session:join': 'ahh hhhh ++++++ h',
   'session:steer': 'ahh hhhh ++++++ h',

@@ -119,6 +119,23 @@ export const buildReply = async (
   return id
 }
 
+export const buildSavedLoop = async (
+  { db }: Pick<TestApp, 'db'>,
+  input: { takeId: string; by?: PersonKey; name?: string; startSec?: number }
+): Promise<string> => {
+  const id = newId()
+  const { takeId, by = 'tomas', name = 'The turnaround', startSec = 1 } = input
+  await db('saved_loops').insert({
+    id,
+    take_id: takeId,
+    user_id: idOf(by),
+    name,
+    start_sec: startSec,
+    end_sec: startSec + 1
+  })
+  return id
+}
+
 export const buildInvitation = async (
   { db }: Pick<TestApp, 'db'>,
   input: { by?: PersonKey; groupId?: string; role?: Role; expiresAt?: Date } = {}

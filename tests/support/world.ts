@@ -8,6 +8,7 @@ import {
   buildLink,
   buildRecording,
   buildReply,
+  buildSavedLoop,
   buildSession,
   buildTake,
   buildTune,
@@ -49,7 +50,18 @@ const plus = (standing: Standing, more: Standing): Standing => {
   return sum
 }
 
-type Kind = 'site' | 'group' | 'tune' | 'take' | 'comment' | 'reply' | 'invitation' | 'link' | 'session' | 'recording'
+type Kind =
+  | 'site'
+  | 'group'
+  | 'tune'
+  | 'take'
+  | 'savedLoop'
+  | 'comment'
+  | 'reply'
+  | 'invitation'
+  | 'link'
+  | 'session'
+  | 'recording'
 
 interface TakeCase {
   label: string
@@ -179,6 +191,9 @@ export const targetCases = (app: Pick<TestApp, 'db' | 'storageDir'>): Record<Kin
       label: `a take ${one.label}`,
       standing: plus(one.around, one.hearing),
       make: async () => ({ takeId: await take(one) })
+    })),
+    savedLoop: inTake(takeCases, speaker, async (takeId, by) => ({
+      savedLoopId: await buildSavedLoop(app, { takeId, by })
     })),
     comment: inTake(takeCases, speaker, async (takeId, by) => ({ commentId: await buildComment(app, { takeId, by }) })),
     reply: inTake(takeCases, speaker, async (takeId, by) => ({
