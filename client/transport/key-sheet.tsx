@@ -1,3 +1,4 @@
+import type { ReactNode } from 'react'
 import { Checkbox } from '@client/ui/checkbox'
 import { Dialog } from '@client/ui/dialog'
 import { hearingNote } from './hearing'
@@ -9,17 +10,19 @@ export interface KeySheetProps {
   areOff: boolean
   /** Without it the switch is not shown. */
   onOff?: (areOff: boolean) => void
+  /** Stands in place of the list: where keys can be changed, what changes them. */
+  editor?: ReactNode
   onClose: () => void
 }
 
 /** All keys and pedals on one sheet. */
-export function KeySheet({ map, areOff, onOff, onClose }: KeySheetProps) {
+export function KeySheet({ map, areOff, onOff, editor, onClose }: KeySheetProps) {
   return (
     <Dialog title="Keys and pedals" onClose={onClose}>
-      <KeyList map={map} />
+      {editor ?? <KeyList map={map} />}
       <p className="mt-4 text-sm text-pencil">
-        A pedal that sends page keys goes back a bar with one foot and plays or pauses with the other. Keys rest while
-        you write.
+        A pedal sends the arrow or page keys: page up goes back a bar, page down plays or pauses, unless you give them
+        something else to do. Keys rest while you write.
       </p>
       {onOff ? (
         <div className="mt-3">

@@ -2,27 +2,10 @@
 // (WCAG 2.2, 2.1.4). Keys never fire while somebody writes.
 import { useScope } from '@client/lib/scope'
 import { useLatest } from '@client/lib/use-latest'
+import type { KeyAction } from '@shared/practice/key-actions'
+import type { KeyChoices } from '@shared/practice/preferences'
 
-export type TransportAction =
-  | 'playPause'
-  | 'backBeat'
-  | 'onBeat'
-  | 'backBar'
-  | 'onBar'
-  | 'toStart'
-  | 'loop'
-  | 'loopStart'
-  | 'loopEnd'
-  | 'slower'
-  | 'faster'
-  | 'fullSpeed'
-  | 'zoomIn'
-  | 'zoomOut'
-  | 'follow'
-  | 'comment'
-  | 'undo'
-  | 'redo'
-  | 'keySheet'
+export type TransportAction = KeyAction
 
 export interface KeyBinding {
   action: TransportAction
@@ -40,12 +23,20 @@ export const defaultKeyMap: KeyBinding[] = [
   { action: 'backBeat', label: 'Back a beat', keys: ['Shift+ArrowLeft'] },
   { action: 'onBeat', label: 'On a beat', keys: ['Shift+ArrowRight'] },
   { action: 'toStart', label: 'To the start of the loop, or of the take', keys: ['Home'] },
+  { action: 'againBefore', label: 'Again from two bars before', keys: ['a'] },
   { action: 'loop', label: 'Loop the selection, or stop looping', keys: ['l'] },
   { action: 'loopStart', label: 'Start the selection here', keys: ['['] },
   { action: 'loopEnd', label: 'End the selection here', keys: [']'] },
   { action: 'slower', label: 'Slower by 5 %', keys: [','] },
   { action: 'faster', label: 'Faster by 5 %', keys: ['.'] },
   { action: 'fullSpeed', label: 'Back to 100 %', keys: ['='] },
+  { action: 'pitchUp', label: 'A semitone up', keys: ['Shift+ArrowUp'] },
+  { action: 'pitchDown', label: 'A semitone down', keys: ['Shift+ArrowDown'] },
+  { action: 'octaveUp', label: 'An octave up, or back', keys: ['o'] },
+  { action: 'lowFocus', label: 'Low focus on or off', keys: ['b'] },
+  { action: 'clickOnOff', label: 'Click on or off', keys: ['k'] },
+  { action: 'countIn', label: 'Count in, or start at once', keys: ['n'] },
+  { action: 'tapTempo', label: 'Tap the tempo', keys: ['t'] },
   { action: 'zoomIn', label: 'Look nearer', keys: ['ArrowUp'] },
   { action: 'zoomOut', label: 'Look from farther', keys: ['ArrowDown'] },
   { action: 'follow', label: 'Follow the line, or stop following', keys: ['f'] },
@@ -55,14 +46,18 @@ export const defaultKeyMap: KeyBinding[] = [
   { action: 'keySheet', label: 'Show this sheet', keys: ['?'] }
 ]
 
-type KeyLike = Pick<KeyboardEvent, 'key' | 'code' | 'shiftKey' | 'ctrlKey' | 'metaKey' | 'altKey'>
+type KeyLike = Pick<KeyboardEvent, 'key' | 'code' | 'shiftKey' | 'ctrlKey' | 'metaKey' | 'altKey'> &
+  Partial<Pick<KeyboardEvent, 'getModifierState'>>
 
-/** The name of a pressed key as key maps write it. A sign that needs Shift to be typed (`?`) is written without it. */
+/** The name of a pressed key as key maps write it. A sign that needs Shift or AltGr to be typed (`?`, `[`) is written without. */
 export const keyName = (event: KeyLike): string => {
   const base = event.key === ' ' ? 'Space' : event.key.length === 1 ? event.key.toLowerCase() : event.key
   const isSign = event.key.length === 1 && event.key !== ' ' && !/[\p{L}\p{N}]/u.test(event.key)
-  const mod = event.ctrlKey || event.metaKey
-  return `${mod ? 'Mod+' : ''}${event.altKey ? 'Alt+' : ''}${event.shiftKey && !isSign ? 'Shift+' : ''}${base}`
+  // Windows reports AltGr as Ctrl and Alt.
+  const isTyped = isSign && event.getModifierState?.('AltGraph') === true
+  const mod = (event.ctrlKey || event.metaKey) && !isTyped
+  const alt = event.altKey && !isTyped
+  return `${mod ? 'Mod+' : ''}${alt ? 'Alt+' : ''}${event.shiftKey && !isSign ? 'Shift+' : ''}${base}`
 }
 
 export const actionFor = (map: readonly KeyBinding[], event: KeyLike): TransportAction | null => {
@@ -77,6 +72,25 @@ export const rebind = (map: readonly KeyBinding[], action: TransportAction, keys
       ? { ...binding, keys }
       : { ...binding, keys: binding.keys.filter((key) => !keys.includes(key)) }
   )
+
+/** The keys as they come, with a person's own choices on top. A chosen key is taken from the action that comes with it. */
+export const keyMapFrom = (choices: KeyChoices): KeyBinding[] => {
+  const chosen = new Set(Object.values(choices).flat())
+  return defaultKeyMap.map((binding) => {
+    const own = choices[binding.action]
+    return { ...binding, keys: own ? [...own] : binding.keys.filter((key) => !chosen.has(key)) }
+  })
+}
+
+/** What of a map is a person's own choice: the actions whose keys are not those they come with. */
+export const choicesOf = (map: readonly KeyBinding[]): KeyChoices => {
+  const choices: KeyChoices = {}
+  for (const { action, keys } of map) {
+    const usual = defaultKeyMap.find((binding) => binding.action === action)?.keys ?? []
+    if (keys.length !== usual.length || keys.some((key, at) => key !== usual[at])) choices[action] = keys
+  }
+  return choices
+}
 
 const pressTypes = new Set(['button', 'checkbox', 'radio', 'range', 'color', 'file', 'submit', 'reset', 'image'])
 

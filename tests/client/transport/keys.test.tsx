@@ -1,15 +1,20 @@
 import { cleanup, render, screen } from '@testing-library/react'
 import userEvent from '@testing-library/user-event'
+import fc from 'fast-check'
 import { afterEach, describe, expect, it, vi } from 'vitest'
 import {
   actionFor,
+  choicesOf,
   defaultKeyMap,
+  keyMapFrom,
   keyName,
   rebind,
   shownKey,
   useTransportKeys,
   type KeyOptions
 } from '@client/transport/keys'
+import { keyActions } from '@shared/practice/key-actions'
+import { KeyChoices } from '@shared/practice/preferences'
 
 afterEach(cleanup)
 
@@ -43,6 +48,38 @@ describe('the key map', () => {
     expect(actionFor(map, pressed(' '))).toBe('loop')
     expect(actionFor(map, pressed('PageDown'))).toBe('playPause')
     expect(actionFor(map, pressed('l'))).toBeNull()
+  })
+
+  it('has every action once', () => {
+    expect(defaultKeyMap.map(({ action }) => action).sort()).toEqual([...keyActions].sort())
+  })
+
+  it('reads a sign typed with AltGr as that sign', () => {
+    const altGr = { ctrlKey: true, altKey: true, getModifierState: (key: string) => key === 'AltGraph' }
+    expect(actionFor(defaultKeyMap, pressed('[', altGr))).toBe('loopStart')
+    expect(keyName(pressed('[', { ctrlKey: true, altKey: true }))).toBe('Mod+Alt+[')
+  })
+
+  it('comes back from the choices that are kept of it, whatever was given to what', () => {
+    const key = fc.constantFrom('Space', 'l', 'q', 'PageUp', 'Shift+ArrowUp', 'Mod+z', '?')
+    const step = fc.tuple(fc.constantFrom(...keyActions), fc.uniqueArray(key, { maxLength: 3 }))
+    fc.assert(
+      fc.property(fc.array(step, { maxLength: 6 }), (steps) => {
+        const map = steps.reduce((before, [action, keys]) => rebind(before, action, keys), defaultKeyMap)
+        const choices = choicesOf(map)
+        expect(keyMapFrom(choices)).toEqual(map)
+        expect(KeyChoices.safeParse(choices).success).toBe(true)
+        const all = map.flatMap(({ keys }) => keys)
+        expect(new Set(all).size).toBe(all.length)
+      }),
+      { numRuns: 60 }
+    )
+    expect(choicesOf(defaultKeyMap)).toEqual({})
+  })
+
+  it('takes a key of an action that came later away where a person had chosen it for another', () => {
+    const map = keyMapFrom({ zoomIn: ['k'] })
+    expect([actionFor(map, pressed('k')), actionFor(map, pressed('ArrowUp'))]).toEqual(['zoomIn', null])
   })
 
   it('shows keys as they are engraved', () => {
