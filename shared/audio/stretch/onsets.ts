@@ -110,7 +110,7 @@ export const createOnsetFinder = (source: SampleSource): OnsetFinder => {
       }
       const floor = loudest * floorRatio + 1e-9
       const rise = Math.log2((after / meanSum + floor) / (before / meanSum + floor))
-      if (rise > 0.5) sum += weights[b]! * Math.min(riseCap, rise)
+      if (rise > 0.5) sum += weights[b]! * (Math.min(riseCap, rise) + rise * 1e-3)
     }
     rises.set(j, sum)
     return sum
@@ -118,8 +118,8 @@ export const createOnsetFinder = (source: SampleSource): OnsetFinder => {
 
   // The place: a fine envelope of the sharpened signal around the coarse peak.
   const grain = Math.max(8, Math.round(sampleRate * 0.0005))
-  const leadGrains = 100
-  const tailGrains = 90
+  const leadGrains = 120
+  const tailGrains = 130
   const fine = new Float64Array(leadGrains + tailGrains)
   const fineRaw = Array.from({ length: channels }, () => new Float32Array((leadGrains + tailGrains) * grain + 1))
 
@@ -142,28 +142,32 @@ export const createOnsetFinder = (source: SampleSource): OnsetFinder => {
     }
     // Two grains together, so that one zero crossing is no silence.
     for (let g = fine.length - 1; g > 0; g--) fine[g] = Math.max(fine[g]!, fine[g - 1]!)
-    let peak = 0
-    let peakAt = leadGrains
-    for (let g = leadGrains - 40; g < leadGrains + 70; g++) {
-      if (fine[g]! > peak) {
-        peak = fine[g]!
-        peakAt = g
-      }
-    }
+    // The rise is where the next moments stand highest over the loudest of the period before. The coarse place is early when
+    // a short sound follows silence, since the mean after it is largest when the sound lies in its middle.
+    let first = leadGrains
     let calm = 0
-    for (let g = Math.max(0, peakAt - 95); g < peakAt - 30; g++) calm = Math.max(calm, fine[g]!)
-    calm = Math.min(calm, peak * 0.5)
-    let first = peakAt
-    const low = calm + 0.06 * (peak - calm)
-    while (first > Math.max(1, peakAt - 30) && fine[first - 1]! > low) first--
-    for (let g = Math.max(1, peakAt - 30); g < first; g++) {
-      if (fine[g]! > low) {
+    let peak = 0
+    let best = -Infinity
+    const loudest = fine.reduce((most, one) => Math.max(most, one), 0)
+    for (let g = leadGrains - 60; g < leadGrains + 100; g++) {
+      let before = 0
+      for (let i = g - 60; i < g - 2; i++) before = Math.max(before, fine[i]!)
+      let after = 0
+      for (let i = g; i < g + 24; i++) after = Math.max(after, fine[i]!)
+      const score = Math.log((after + loudest * 1e-4) / (before + loudest * 1e-4)) + 0.3 * Math.log(after / loudest + 1e-4)
+      if (score > best + 1e-9) {
+        best = score
         first = g
-        break
+        calm = before
+        peak = after
       }
     }
+    calm = Math.min(calm, peak * 0.7)
+    const low = calm + 0.06 * (peak - calm)
+    const end = first + 24
+    while (first < end && fine[first]! < low) first++
     let middle = first
-    while (middle < peakAt && fine[middle]! < calm + 0.35 * (peak - calm)) middle++
+    while (middle < end && fine[middle]! < calm + 0.35 * (peak - calm)) middle++
     const onset = { cut: start + (first - 2) * grain, anchor: start + middle * grain, strength }
     refined.set(j, onset)
     return onset

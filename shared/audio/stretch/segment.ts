@@ -35,6 +35,8 @@ export interface SegmentPlan {
   copied: number
   /** Source frame that a frame's centre should have for an inner centre after the copied part. */
   wanted(innerCentre: number): number
+  /** The last frames of what sounds before the cut, one window long; without it nothing is carried over. */
+  tail?: readonly Float64Array[] | undefined
   /** Source frame that no window may pass; asked anew for each frame. */
   limit(wantedSource: number): number
 }
@@ -46,8 +48,65 @@ export interface Segment {
   produce(upTo: number): boolean
   /** Adds frames [from, to) times the gain curve into `out` at `offset`. */
   mix(out: readonly Float32Array[], offset: number, from: number, to: number, gain: (inner: number) => number): void
-  /** Source centre of the last frame, for looking at. */
-  readonly lastSource: number
+  /** The frames that end before `to`, which must be whole. */
+  tail(to: number, length: number): Float64Array[]
+}
+
+/** A region that grows by less than this in energy over the cut is held over. */
+const heldRatio = 2
+
+const powerOf = (re: readonly Float64Array[], im: readonly Float64Array[], power: Float64Array) => {
+  power.fill(0)
+  for (let c = 0; c < re.length; c++) {
+    const [r, m] = [re[c]!, im[c]!]
+    for (let k = 0; k < power.length; k++) power[k] = power[k]! + r[k]! * r[k]! + m[k]! * m[k]!
+  }
+}
+
+/** Calls back with every region of influence [start, end): one peak each, parted at the valleys. */
+const eachRegion = (power: Float64Array, found: (start: number, end: number) => void) => {
+  const bins = power.length
+  const isPeak = (k: number) =>
+    power[k]! >= (power[k - 1] ?? 0) &&
+    power[k]! >= (power[k - 2] ?? 0) &&
+    power[k]! > (power[k + 1] ?? 0) &&
+    power[k]! > (power[k + 2] ?? 0)
+  let start = 0
+  let valley = 0
+  let hasPeak = false
+  for (let k = 0; k < bins; k++) {
+    if (isPeak(k)) {
+      if (hasPeak && valley > start) {
+        found(start, valley)
+        start = valley
+      }
+      hasPeak = true
+      valley = k + 1
+    } else if (valley >= bins || power[k]! < (power[valley] ?? Infinity)) valley = k
+  }
+  if (start < bins) found(start, bins)
+}
+
+/** Unit phasor of the angle from the second spectrum to the first over [start, end), all channels together. */
+const angleBetween = (
+  lr: readonly Float64Array[],
+  li: readonly Float64Array[],
+  qr: readonly Float64Array[],
+  qi: readonly Float64Array[],
+  start: number,
+  end: number
+): [number, number] => {
+  let r = 0
+  let m = 0
+  for (let c = 0; c < lr.length; c++) {
+    const [ar, ai, br, bi] = [lr[c]!, li[c]!, qr[c]!, qi[c]!]
+    for (let b = start; b < end; b++) {
+      r += ar[b]! * br[b]! + ai[b]! * bi[b]!
+      m += ai[b]! * br[b]! - ar[b]! * bi[b]!
+    }
+  }
+  const length = Math.hypot(r, m)
+  return length > 1e-20 ? [r / length, m / length] : [1, 0]
 }
 
 export const createSegment = (plan: SegmentPlan): Segment => {
@@ -57,11 +116,11 @@ export const createSegment = (plan: SegmentPlan): Segment => {
   const bins = half + 1
   const channels = source.channels
 
-  const made = Array.from({ length: channels }, () => new Float64Array(size * 2))
-  /** Inner frame of made[0]. */
-  let base = plan.from - (size - hop)
+  const made = Array.from({ length: channels }, () => new Float64Array(size * 4))
   /** Start of the next frame's window. */
-  let next = base
+  let next = plan.from - (size - hop)
+  /** Inner frame of made[0]: a window earlier, so that a piece that has just begun has a tail too. */
+  let base = next - size
   let isChained = false
   let lastSource = sourceAt
 
@@ -99,7 +158,7 @@ export const createSegment = (plan: SegmentPlan): Segment => {
     const length = made[0]!.length
     if (upTo - base <= length) return
     // What lies more than a window back has been heard.
-    const shift = Math.max(0, next - size - base)
+    const shift = Math.max(0, next - 2 * size - base)
     const needed = upTo - base - shift
     for (let c = 0; c < channels; c++) {
       const old = made[c]!
@@ -155,82 +214,92 @@ export const createSegment = (plan: SegmentPlan): Segment => {
 
   /** Turns the frame in xr, xi so that each region goes on where the last frame had it. */
   const turn = () => {
-    power.fill(0)
+    powerOf(xr, xi, power)
+    eachRegion(power, (start, end) => {
+      const [ur, ui] = angleBetween(yr, yi, pr, pi, start, end)
+      turnRegion(start, end, ur, ui)
+    })
+  }
+
+  const turnRegion = (start: number, end: number, ur: number, ui: number) => {
     for (let c = 0; c < channels; c++) {
-      for (let k = 0; k < bins; k++) power[k] = power[k]! + xr[c]![k]! ** 2 + xi[c]![k]! ** 2
+      const [ar, ai, br, bi] = [xr[c]!, xi[c]!, yr[c]!, yi[c]!]
+      for (let b = start; b < end; b++) {
+        br[b] = ar[b]! * ur - ai[b]! * ui
+        bi[b] = ar[b]! * ui + ai[b]! * ur
+      }
     }
-    let start = 0
-    let k = 0
-    while (start < bins) {
-      // The next peak from here, then the valley after it.
+  }
+
+  /**
+   * What sounds on through the cut (a held chord under a new bass note) must not be put back to the recording's phase: its
+   * regions are turned to where the piece before has brought them. Null when nothing has to be.
+   */
+  const heldOver = (tail: readonly Float64Array[]): { start: number; end: number; ur: number; ui: number }[] | null => {
+    for (let c = 0; c < channels; c++) {
+      const data = tail[c]!
+      for (let i = 0; i < size; i++) work[i] = data[i]! * window[i]!
+      fft.forward(work, yr[c]!, yi[c]!)
+    }
+    if (!analyse(sourceAt - half, pr, pi) || !analyse(sourceAt + half, xr, xi)) return null
+    const before = new Float64Array(bins)
+    powerOf(pr, pi, before)
+    powerOf(xr, xi, power)
+    const held: { start: number; end: number; ur: number; ui: number }[] = []
+    eachRegion(before, (start, end) => {
       let peak = start
-      for (k = start; k < bins; k++) {
-        const here = power[k]!
-        if (
-          here >= (power[k - 1] ?? 0) &&
-          here >= (power[k - 2] ?? 0) &&
-          here > (power[k + 1] ?? 0) &&
-          here > (power[k + 2] ?? 0)
-        ) {
-          peak = k
-          break
-        }
+      for (let b = start; b < end; b++) if (before[b]! > before[peak]!) peak = b
+      let early = 0
+      let late = 0
+      for (let b = Math.max(0, peak - 1); b <= Math.min(bins - 1, peak + 1); b++) {
+        early += before[b]!
+        late += power[b]!
       }
-      let end = bins
-      if (k < bins) {
-        let valley = peak + 1
-        for (let m = peak + 1; m < bins; m++) {
-          if (power[m]! < (power[valley] ?? Infinity)) valley = m
-          const isNextPeak =
-            m > peak + 2 &&
-            power[m]! >= power[m - 1]! &&
-            power[m]! >= power[m - 2]! &&
-            power[m]! > (power[m + 1] ?? 0) &&
-            power[m]! > (power[m + 2] ?? 0)
-          if (isNextPeak) {
-            end = Math.max(valley, peak + 1)
-            break
-          }
-        }
-      }
-      let r = 0
-      let m = 0
-      for (let c = 0; c < channels; c++) {
-        const [lr, li, qr, qi] = [yr[c]!, yi[c]!, pr[c]!, pi[c]!]
-        for (let b = start; b < end; b++) {
-          r += lr[b]! * qr[b]! + li[b]! * qi[b]!
-          m += li[b]! * qr[b]! - lr[b]! * qi[b]!
-        }
-      }
-      const length = Math.hypot(r, m)
-      const [ur, ui] = length > 1e-20 ? [r / length, m / length] : [1, 0]
-      for (let c = 0; c < channels; c++) {
-        const [ar, ai, br, bi] = [xr[c]!, xi[c]!, yr[c]!, yi[c]!]
-        for (let b = start; b < end; b++) {
-          br[b] = ar[b]! * ur - ai[b]! * ui
-          bi[b] = ar[b]! * ui + ai[b]! * ur
-        }
-      }
-      start = end
-    }
+      if (late > heldRatio * early || early <= 0) return
+      const [ur, ui] = angleBetween(yr, yi, pr, pi, start, end)
+      let from = peak
+      let to = peak + 1
+      while (from > start && power[from - 1]! <= 8 * before[from - 1]!) from--
+      while (to < end && power[to]! <= 8 * before[to]!) to++
+      held.push({ start: from, end: to, ur, ui })
+    })
+    return held
   }
 
   const copyFrame = (at: number): boolean => {
     const from = sourceAt + (at - innerAt)
-    if (!source.read(from, raw)) return false
+    if (held.length > 0) {
+      if (!analyse(from + half, xr, xi)) return false
+      turnRegion(0, bins, 1, 0)
+      for (const { start, end, ur, ui } of held) turnRegion(start, end, ur, ui)
+      sound(at)
+    } else {
+      if (!source.read(from, raw)) return false
+      makeRoom(at + size)
+      template.fill(0)
+      for (let c = 0; c < channels; c++) {
+        const data = raw[c]!
+        for (let i = 0; i < size; i++) {
+          work[i] = data[i]! * window[i]!
+          template[i] = template[i]! + work[i]!
+        }
+        add(at, c, work)
+      }
+    }
+    lastSource = from + half
+    isChained = held.length > 0
+    return true
+  }
+
+  /** Puts the frame in yr, yi into place. */
+  const sound = (at: number) => {
     makeRoom(at + size)
     template.fill(0)
     for (let c = 0; c < channels; c++) {
-      const data = raw[c]!
-      for (let i = 0; i < size; i++) {
-        work[i] = data[i]! * window[i]!
-        template[i] = template[i]! + work[i]!
-      }
+      fft.inverse(yr[c]!, yi[c]!, work)
+      for (let i = 0; i < size; i++) template[i] = template[i]! + work[i]!
       add(at, c, work)
     }
-    lastSource = from + half
-    isChained = false
-    return true
   }
 
   const turnedFrame = (at: number): boolean => {
@@ -252,24 +321,18 @@ export const createSegment = (plan: SegmentPlan): Segment => {
     const best = mostAlike(wanted, low, high)
     if (best === null || !analyse(best - hop, pr, pi) || !analyse(best, xr, xi)) return false
     turn()
-    makeRoom(at + size)
-    template.fill(0)
-    for (let c = 0; c < channels; c++) {
-      fft.inverse(yr[c]!, yi[c]!, work)
-      for (let i = 0; i < size; i++) template[i] = template[i]! + work[i]!
-      add(at, c, work)
-    }
+    sound(at)
     lastSource = best
     isChained = true
     return true
   }
 
+  const held = plan.tail ? heldOver(plan.tail) ?? [] : []
+
   return {
     innerAt,
     sourceAt,
-    get lastSource() {
-      return lastSource
-    },
+    tail: (to, length) => made.map((data) => data.slice(to - base - length, to - base)),
     produce: (upTo) => {
       while (next < upTo) {
         const isCopy = next + half <= innerAt + plan.copied

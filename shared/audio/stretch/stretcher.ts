@@ -128,6 +128,10 @@ export const createStretcher = (source: SampleSource): Stretcher => {
     return jump
   }
 
+  /** What the piece now sounding gives just before the inner frame `to`; undefined when it has not got it. */
+  const tailOf = (one: Piece, to: number, length: number): Float64Array[] | undefined =>
+    one.segment?.produce(to) ? one.segment.tail(to, length) : undefined
+
   const open = (cut: Cut): Piece | 'wait' => {
     const leg = legAtInner(cut.inner + 1e-6)
     const fade = cut.kind === 'mode' ? modeFade : cutFade
@@ -155,6 +159,7 @@ export const createStretcher = (source: SampleSource): Stretcher => {
       sourceAt: cut.source,
       from: inner - fade,
       copied,
+      tail: cut.kind === 'attack' && piece ? tailOf(piece, inner, bench.size) : undefined,
       wanted: (centre) => sourceAtInner(centre) + aheadBy * Math.max(0, 1 - (centre - start) / catchUp),
       limit: (wanted) => {
         const ahead = finder.between(cut.source + Math.round(0.02 * sampleRate), Math.ceil(wanted) + bench.size)
