@@ -99,7 +99,8 @@ export function KeyEditor({ map, onMap }: KeyEditorProps) {
       ) : (
         <KeyList map={map} />
       )}
-      <div className="sticky bottom-0 -mx-5 grid gap-2 border-t border-rule bg-sheet px-5 py-2">
+      {/* Down over the padding of the dialog: nothing shows below it. */}
+      <div className="sticky -bottom-2 -mx-5 grid gap-2 border-t border-rule bg-sheet px-5 pt-2 pb-4">
         {isOpen ? (
           <p role="status" className="min-h-10 text-sm">
             {words ?? 'Take a key away by pressing it here. A key that you give is lost to what it did before.'}

@@ -1,5 +1,5 @@
 // The loops that one person keeps on a take: seen by nobody else.
-import { useState } from 'react'
+import { useRef, useState } from 'react'
 import type { SavedLoop } from '@shared/contracts/saved-loops'
 import { limits } from '@shared/limits'
 import type { Span } from '@shared/timing/types'
@@ -25,6 +25,7 @@ export function SavedLoops({ takeId, current, wordsFor, loopingId = null, onLoop
   const list = useSavedLoops(takeId)
   const acts = useSavedLoopActs(takeId)
   const toast = useToast()
+  const section = useRef<HTMLElement>(null)
   const loops = list.data?.items ?? []
   const fault = acts.fault ?? list.error
   const isFull = loops.length >= limits.savedLoopsPerTake
@@ -32,10 +33,12 @@ export function SavedLoops({ takeId, current, wordsFor, loopingId = null, onLoop
   const remove = (loop: SavedLoop): void => {
     const bringBack = acts.remove(loop)
     toast({ text: `“${loop.name}” deleted.`, undo: bringBack })
+    // The button that was pressed is gone with its row.
+    section.current?.focus()
   }
 
   return (
-    <section aria-label="Saved loops" className="grid gap-2">
+    <section ref={section} tabIndex={-1} aria-label="Saved loops" className="grid gap-2">
       {fault ? <Notice kind="fault">{fault.message}</Notice> : null}
       {loops.length > 0 ? (
         <ul className="grid">

@@ -113,6 +113,7 @@ describe('SavedLoops', () => {
     await user.click(await screen.findByRole('button', { name: 'More about “Turnaround”' }))
     await user.click(screen.getByRole('menuitem', { name: 'Delete', hidden: true }))
     expect(names()).toEqual(['Loop “Bridge”'])
+    expect(document.activeElement).toBe(screen.getByRole('region', { name: 'Saved loops' }))
     await user.click(
       within(screen.getByText('“Turnaround” deleted.').closest('div')!).getByRole('button', { name: 'Undo' })
     )
