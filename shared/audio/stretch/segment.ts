@@ -148,6 +148,17 @@ export const createSegment = (plan: SegmentPlan): Segment => {
     return true
   }
 
+  /** Energy of the windowed frames last read. */
+  const energyOfRaw = (): number => {
+    let sum = 0
+    for (let c = 0; c < channels; c++) {
+      const data = raw[c]!
+      for (let i = 0; i < size; i++) sum += (data[i]! * window[i]!) ** 2
+    }
+    return sum
+  }
+  const energyAt = (centre: number): number | null => (source.read(centre - half, raw) ? energyOfRaw() : null)
+
   const add = (at: number, channel: number, frame: Float64Array) => {
     const target = made[channel]!
     const offset = at - base
@@ -319,8 +330,22 @@ export const createSegment = (plan: SegmentPlan): Segment => {
       if (!analyse(lastSource, yr, yi)) return false
     }
     const best = mostAlike(wanted, low, high)
-    if (best === null || !analyse(best - hop, pr, pi) || !analyse(best, xr, xi)) return false
+    if (best === null || !analyse(best - hop, pr, pi)) return false
+    // A sound that dies quickly must not flicker where the likest place lies before or after the wanted one.
+    const due = Math.max(Math.min(Math.round(wanted), highest), Math.min(lowest, highest))
+    const level = due === best ? 1 : energyAt(due)
+    if (level === null || !analyse(best, xr, xi)) return false
     turn()
+    if (due !== best) {
+      const gain = Math.sqrt((level + 1e-12) / (energyOfRaw() + 1e-12))
+      const kept = Math.max(0.5, Math.min(2, gain))
+      for (let c = 0; c < channels; c++) {
+        for (let k = 0; k < bins; k++) {
+          yr[c]![k] = yr[c]![k]! * kept
+          yi[c]![k] = yi[c]![k]! * kept
+        }
+      }
+    }
     sound(at)
     lastSource = best
     isChained = true

@@ -15,6 +15,8 @@ const modeFadeSec = 0.012
 const blockFrames = 256
 /** A stretched piece that ran ahead (its attack was copied at full speed) comes back to the map within about this time. */
 const catchUpSec = 0.45
+/** How far ahead a piece looks for the next attack when it chooses its window, seconds of source. */
+const lookSec = 1.1
 
 interface InnerLeg extends Leg {
   /** Inner frame at which it begins. */
@@ -42,7 +44,7 @@ const isPlainLeg = (leg: Leg): boolean => leg.speed === 1 && leg.ratio === 1
 export const createStretcher = (source: SampleSource): Stretcher => {
   const { sampleRate, channels } = source
   const size = 2 ** Math.round(Math.log2(sampleRate * 0.09))
-  const benches = [size, size >> 1, size >> 2, size >> 3].map(createBench)
+  const benches = [size << 1, size, size >> 1, size >> 2, size >> 3].map(createBench)
   const finder = createOnsetFinder(source)
   const cutFade = Math.round(cutFadeSec * sampleRate)
   const modeFade = Math.round(modeFadeSec * sampleRate)
@@ -138,12 +140,12 @@ export const createStretcher = (source: SampleSource): Stretcher => {
     if (!leg || leg.isSilent) return { cut, fade, segment: null, isPlain: false, copied: 0 }
     if (isPlainLeg(leg)) return { cut, fade, segment: null, isPlain: true, copied: 0 }
     // How far the attack reaches that this piece starts with or just after.
-    const onsets = finder.between(cut.source - size, cut.source + Math.round(sampleRate * 0.25))
+    const onsets = finder.between(cut.source - size, cut.source + Math.round(sampleRate * lookSec))
     if (!onsets) return 'wait'
     const attack = cut.kind === 'attack' ? cut.source : onsets.filter((one) => one.cut <= cut.source).at(-1)?.cut
     const following = onsets.find((one) => one.cut > cut.source + 0.02 * sampleRate)?.cut
     const room = (following ?? Infinity) - cut.source
-    const bench = benches.find((one) => one.size * 0.9 <= room) ?? benches.at(-1)!
+    const bench = benches.find((one) => one.size * (one.size > size ? 6 : 0.9) <= room) ?? benches.at(-1)!
     const half = bench.size >> 1
     const longest = Math.max(0.75 * half, Math.min(half + bench.hop, room - half - bench.hop))
     const copied = Math.max(0, Math.round(attack === undefined ? 0 : attack + longest - cut.source))
@@ -151,7 +153,9 @@ export const createStretcher = (source: SampleSource): Stretcher => {
     const start = inner + copied
     const aheadBy = cut.source + copied - sourceAtInner(start)
     const slope = leg.speed / leg.ratio
-    const catchUp = Math.max(catchUpSec * sampleRate, (2 * Math.abs(aheadBy)) / slope)
+    // Back on the map before the next attack, where that is near: a note's release belongs to it.
+    const left = following === undefined ? Infinity : ((following - bench.size - cut.source) / slope - copied) * 0.9
+    const catchUp = Math.max(1, Math.min(left, Math.max(catchUpSec * sampleRate, (2 * Math.abs(aheadBy)) / slope)))
     const segment = createSegment({
       bench,
       source,
@@ -272,7 +276,7 @@ export const createStretcher = (source: SampleSource): Stretcher => {
     get outFrame() {
       return outFrame
     },
-    reach: { before: finder.reach + 2 * size, after: finder.reach + 3 * size },
+    reach: { before: finder.reach + 4 * size, after: finder.reach + Math.round(lookSec * sampleRate) + 6 * size },
     schedule,
     sourceFrameAt: (out) => {
       const leg = legAtOut(out)
