@@ -276,7 +276,7 @@ export function Timeline(props: TimelineProps) {
               {...pointer(false)}
             >
               <SelectionBand store={store} span={shownSelection} />
-              <Waveform store={store} durationSec={durationSec} peaks={props.peaks} gain={gain} />
+              <Waveform store={store} player={player} durationSec={durationSec} peaks={props.peaks} gain={gain} />
             </div>
             <div className="relative mt-1.5" style={{ height: commentsPx }}>
               <SpanLane

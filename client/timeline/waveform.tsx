@@ -3,17 +3,21 @@ import WaveSurfer from 'wavesurfer.js'
 import { useScope } from '@client/lib/scope'
 import { styleNonce } from '@client/lib/style-nonce'
 import { useLatest } from '@client/lib/use-latest'
+import type { Player } from '@client/transport/player'
 import { readTokens, watchTokens } from '@client/ui/tokens'
 import type { Sec } from '@shared/units'
 import { drawWaveform } from './draw-waveform'
 import { contentPx, type View } from './geometry'
 import type { PeaksSource } from './peaks-source'
+import { playerAsMedia } from './player-media'
 import type { ViewStore } from './view-store'
 
 export const soundHeightPx = 96
 
 export interface WaveformProps {
   store: ViewStore
+  /** Wavesurfer follows it. */
+  player: Player
   durationSec: Sec
   peaks: PeaksSource | null
   /** Linear. */
@@ -22,10 +26,10 @@ export interface WaveformProps {
 
 /**
  * Wavesurfer lays out and recycles the canvases; what is on them is drawn from our own peaks, so that it needs no decoding,
- * no copy of the peaks and stays sharp at every zoom. Our own line shows the place, so its cursor and progress are off,
- * and it gets an idle element: 7.12.12 takes the source away from an external one that is loaded while it starts.
+ * no copy of the peaks and stays sharp at every zoom. It is driven by the player, whatever engine that is; our own line shows
+ * the place, so its cursor and progress are off.
  */
-export const Waveform = memo(function Waveform({ store, durationSec, peaks, gain }: WaveformProps) {
+export const Waveform = memo(function Waveform({ store, player, durationSec, peaks, gain }: WaveformProps) {
   const box = useRef<HTMLDivElement>(null)
   const model = useLatest({ peaks, gain })
   const redraw = useRef<() => void>(() => {})
@@ -39,7 +43,7 @@ export const Waveform = memo(function Waveform({ store, durationSec, peaks, gain
       let shown: View = store.get()
       const surfer = WaveSurfer.create({
         container,
-        media: document.createElement('audio'),
+        media: playerAsMedia(player, scope),
         duration: durationSec,
         peaks: [new Float32Array(2)],
         height: soundHeightPx,
@@ -94,7 +98,7 @@ export const Waveform = memo(function Waveform({ store, durationSec, peaks, gain
         redraw.current = () => {}
       })
     },
-    [store, durationSec]
+    [store, player, durationSec]
   )
   useScope(() => redraw.current(), [peaks, gain])
 

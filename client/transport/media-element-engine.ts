@@ -253,7 +253,6 @@ export const createMediaElementPlayer = (deps: MediaElementDeps = {}): Player =>
     get loop() {
       return loop
     },
-    media: element,
     clock: now,
     positionAt: (at) => {
       const position = heard()

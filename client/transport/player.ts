@@ -12,6 +12,8 @@ export interface PlayerSource {
   durationSec: Sec
   /** Address of the manifest of its pieces; an engine that can do without plays `url`. */
   piecesUrl?: string
+  /** The recording itself where it lies in this browser; a short one is decoded whole. */
+  file?: Blob
   /** Loudness gain to apply, in dB (EBU R128 towards the moderate level). */
   gainDb?: number
 }
@@ -84,9 +86,7 @@ export interface Player {
   readonly volume: number
   readonly loop: PlayerLoop | null
   readonly aids: Aids
-  /** The element wavesurfer follows. */
-  readonly media: HTMLMediaElement
-  /** Seconds on the engine's own clock. */
+  /** Seconds on the engine's own clock, of what is heard now: asked for `at` clock() + 1, a thing is heard in a second. */
   clock(): Sec
   positionAt(clock: Sec): Sec
   /** Resolves when the source can be sought in, or has failed (`state` and `fault` tell). Stops what was playing. */

@@ -54,8 +54,16 @@ function DeskOf({ me, take }: { me: Me; take: Take }) {
   const toast = useToast()
   const navigate = useNavigate()
   const tell = useCallback((text: string) => toast({ text }), [toast])
-  const player = useDeskPlayer(take, tell)
+  const { player, missing } = useDeskPlayer(take, tell)
   useGroupFollow(take.groupId)
   if (!player) return null
-  return <TakeDesk me={me} take={take} player={player} onGone={() => void navigate(paths.group(take.groupId))} />
+  return (
+    <TakeDesk
+      me={me}
+      take={take}
+      player={player}
+      missing={missing}
+      onGone={() => void navigate(paths.group(take.groupId))}
+    />
+  )
 }

@@ -40,6 +40,8 @@ export interface TakeDeskProps {
   me: Me
   take: Take
   player: Player
+  /** What the sound cannot do here, in words. */
+  missing: string | null
   onGone: () => void
 }
 
@@ -47,7 +49,7 @@ const phonePx = 640
 const sideBySidePx = 1024
 
 /** The desk: strip, lanes, transport and margin around one selection and one sound. */
-export function TakeDesk({ me, take, player, onGone }: TakeDeskProps) {
+export function TakeDesk({ me, take, player, missing, onGone }: TakeDeskProps) {
   const toast = useToast()
   const say = useSay()
   const material = useTakeMaterial(take, me)
@@ -278,6 +280,7 @@ export function TakeDesk({ me, take, player, onGone }: TakeDeskProps) {
         <div className="min-w-0 border border-rule bg-sheet px-4 lg:min-h-0 lg:pb-4">{margin}</div>
       </div>
       <div ref={foot} className="sticky bottom-0 z-10 flex-none bg-paper px-2 pt-2 pb-2 sm:px-5 sm:pt-3 sm:pb-3">
+        {missing ? <p className="pb-1 text-sm text-pencil">{missing}</p> : null}
         <PanelBoundary name="the transport">
           <TransportBar
             player={player}

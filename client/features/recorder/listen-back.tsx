@@ -1,6 +1,6 @@
 import { useEffect, useState } from 'react'
 import { useScope } from '@client/lib/scope'
-import { createMediaElementPlayer } from '@client/transport/media-element-engine'
+import { createPlayer } from '@client/transport/create-player'
 import type { Player } from '@client/transport/player'
 import { usePlayer } from '@client/transport/use-player'
 import { IconButton } from '@client/ui/icon-button'
@@ -13,9 +13,9 @@ export function ListenBack({ file, durationSec }: { file: Blob; durationSec: Sec
   const [player, setPlayer] = useState<Player | null>(null)
   useEffect(() => {
     const url = URL.createObjectURL(file)
-    const made = createMediaElementPlayer()
+    const made = createPlayer()
     let isOver = false
-    void made.load({ url, durationSec }).then(() => isOver || setPlayer(made))
+    void made.load({ url, file, durationSec }).then(() => isOver || setPlayer(made))
     return () => {
       isOver = true
       made.dispose()

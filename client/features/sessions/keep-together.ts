@@ -1,7 +1,10 @@
-// Brings one player to where the shared playhead is and keeps it there: a jump when far off, a hardly audible trim when near.
+// Brings one player to where the shared playhead is and keeps it there: by appointment where the engine can (keep-exact.ts),
+// else by a jump when far off and a hardly audible trim when near.
 import type { Player } from '@client/transport/player'
 import { sessionPosition, type SharedPlayback } from '@shared/timing/session-position'
 import type { Sec } from '@shared/units'
+import { gapSec } from './gap'
+import { createKeepExact } from './keep-exact'
 
 /** Farther off than this is mended by a jump, take seconds at full speed. */
 export const jumpBeyondSec = 0.18
@@ -24,17 +27,10 @@ interface Deps {
   onBlocked(): void
 }
 
-/** The shortest way from where we are to where we should be, counting through a loop's end. */
-export const gapSec = (heard: Sec, wanted: Sec, loop: { startSec: Sec; endSec: Sec } | null): Sec => {
-  const straight = wanted - heard
-  if (!loop) return straight
-  const length = loop.endSec - loop.startSec
-  const inside = (sec: Sec): boolean => sec >= loop.startSec - 0.25 && sec <= loop.endSec + 0.25
-  if (!inside(heard) || !inside(wanted) || length <= 0) return straight
-  return straight - Math.round(straight / length) * length
-}
-
 export const createKeepTogether = ({ player, serverNow, timeout, localNow, onBlocked }: Deps) => {
+  const exact = createKeepExact({ player, serverNow, localNow, onBlocked })
+  /** The engine may change while a take is open, so it is asked every time. */
+  const canSchedule = (): boolean => player.capabilities.schedule
   let shared: SharedPlayback | null = null
   let cancel = (): void => undefined
   /** Until then (local ms) the player is settling and nothing is judged. */
@@ -110,7 +106,8 @@ export const createKeepTogether = ({ player, serverNow, timeout, localNow, onBlo
 
   const tick = (): void => {
     cancel()
-    follow()
+    if (shared && canSchedule()) exact.follow(shared)
+    else follow()
     cancel = timeout(tick, lookEveryMs)
   }
 
@@ -119,6 +116,10 @@ export const createKeepTogether = ({ player, serverNow, timeout, localNow, onBlo
     const before = shared
     shared = state
     if (!isFollowing) return
+    if (canSchedule()) {
+      exact.apply(state)
+      return tick()
+    }
     player.setRate(state.rate)
     if (!sameLoop()) player.setLoop(state.loop ? { span: state.loop } : null)
     const now = serverNow()

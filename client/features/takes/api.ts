@@ -10,6 +10,9 @@ export const takeKey = (takeId: string) => routeKey(takeRoutes.get, { params: { 
 /** Where the sound of a take comes from. */
 export const audioUrl = (takeId: string): string => addressOf(takeRoutes.audio, { params: { takeId } })
 
+/** Where the manifest of its pieces is. */
+export const piecesUrl = (takeId: string): string => addressOf(takeRoutes.pieces, { params: { takeId } })
+
 /** While it is being read the answer is asked for again now and then, should the socket be cut. */
 const readingPollMs = 5000
 const isBeingRead = (take: Take | undefined): boolean => take?.state === 'waiting' || take?.state === 'working'

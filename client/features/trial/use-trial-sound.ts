@@ -1,7 +1,7 @@
 import { useEffect, useState } from 'react'
 import { createScope } from '@client/lib/scope'
 import type { PeaksSource } from '@client/timeline/peaks-source'
-import { createMediaElementPlayer } from '@client/transport/media-element-engine'
+import { createPlayer } from '@client/transport/create-player'
 import type { Player } from '@client/transport/player'
 import type { Sec } from '@shared/units'
 import { measureDuration } from './measure'
@@ -24,12 +24,12 @@ export const useTrialSound = ({ file, durationSec: knownSec }: Trial): TrialSoun
   useEffect(() => {
     const scope = createScope()
     const url = URL.createObjectURL(file)
-    const player = createMediaElementPlayer()
+    const player = createPlayer()
     const open = async (): Promise<void> => {
       const durationSec = knownSec ?? (await measureDuration(url, scope))
       if (scope.disposed) return
       if (durationSec === null) return setSound({ ...opening, state: 'unplayable' })
-      await player.load({ url, durationSec })
+      await player.load({ url, file, durationSec })
       if (scope.disposed) return
       if (player.state === 'failed') return setSound({ ...opening, state: 'unplayable' })
       const isDrawn = canDraw(file.size, durationSec)

@@ -93,6 +93,14 @@ export const follow = (part: PlanPart, totalFrames: number): PlanPart => {
   return rest > 0 ? resting(next, { outFrame, isJump: true, fadeOut }, rest, loop) : goOnAtStart(next, fadeOut)
 }
 
+/** Where a place comes to in so many output frames, round the loop if it is in it. */
+const after = (part: PlanPart, sourceFrame: number, outFrames: number): number => {
+  const { loop } = part.settings
+  const moved = sourceFrame + outFrames * speedOf(part)
+  if (!loop || sourceFrame >= loop.endFrame || moved < loop.endFrame) return moved
+  return loop.startFrame + ((moved - loop.endFrame) % (loop.endFrame - loop.startFrame))
+}
+
 const ladderText = (loop: PlanLoop | null): string => JSON.stringify(loop?.ladder ?? null)
 
 /** What a command makes of a part from `outFrame` on; a command that changes nothing lets it go on as it is. */
@@ -123,7 +131,8 @@ export const obey = (part: PlanPart, command: PlanCommand, outFrame: number, tot
     case 'play': {
       if (part.mode !== 'stopped') return goOn()
       // At the very end there is nothing left to play.
-      const begin = jumpTo(here >= totalFrames ? (part.settings.loop?.startFrame ?? 0) : here)
+      const from = here >= totalFrames ? (part.settings.loop?.startFrame ?? 0) : here
+      const begin = jumpTo(Math.min(totalFrames, after(part, from, command.lateFrames ?? 0)))
       const countFrames = Math.round(command.countFrames ?? 0)
       if (countFrames <= 0) return playing(part, begin, totalFrames)
       const counts = command.counts ?? []
@@ -136,8 +145,10 @@ export const obey = (part: PlanPart, command: PlanCommand, outFrame: number, tot
       return part.mode === 'playing' ? standing(part, 'waiting', jumpTo(here)) : goOn()
     case 'feed':
       return part.mode === 'waiting' ? playing(part, jumpTo(here), totalFrames) : goOn()
-    case 'seek':
-      return goOn(part, Math.max(0, Math.min(totalFrames, command.sourceFrame)))
+    case 'seek': {
+      const late = part.mode === 'playing' || part.mode === 'resting' ? (command.lateFrames ?? 0) : 0
+      return goOn(part, Math.max(0, Math.min(totalFrames, after(part, command.sourceFrame, late))))
+    }
     case 'rate':
       return goOn(withSettings({ rate: command.rate }))
     case 'trim':

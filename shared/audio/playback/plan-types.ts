@@ -63,11 +63,15 @@ export interface CountClick {
   accent: 0 | 1 | 2
 }
 
+/**
+ * `lateFrames`: output frames by which a start or a jump was asked for too late; it is made up for, so that it is in its
+ * place all the same.
+ */
 export type PlanCommand =
-  | { kind: 'play'; countFrames?: number; counts?: readonly CountClick[] }
+  | { kind: 'play'; countFrames?: number; counts?: readonly CountClick[]; lateFrames?: number }
   /** `sourceFrame`: the place that was heard when the person pressed; it stands there. */
   | { kind: 'pause'; sourceFrame?: number }
-  | { kind: 'seek'; sourceFrame: number }
+  | { kind: 'seek'; sourceFrame: number; lateFrames?: number }
   | { kind: 'rate'; rate: number }
   | { kind: 'trim'; trim: number }
   | { kind: 'ratio'; ratio: number }

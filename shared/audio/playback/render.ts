@@ -10,6 +10,7 @@ import { createEnvelope } from './envelope.ts'
 import type { PageStore } from './page-store.ts'
 import { createPlan, legOf, partAt, placeIn } from './plan.ts'
 import type { PlanCommand, PlanPart, PlanSettings } from './plan-types.ts'
+import { startPart } from './start-part.ts'
 import { strikePart, type FrameClick } from './strikes.ts'
 
 /** Volume and click level move this slowly. */
@@ -26,6 +27,9 @@ const feedSec = 0.5
  */
 const settleFrames = 1000
 
+/** What passing samples on as they are looks at; stretching them looks much farther (`Stretcher.reach`). */
+const plainReach = { before: 2000, after: 4000 }
+
 export interface PlaybackSetup {
   source: PageStore
   settings: PlanSettings
@@ -38,22 +42,6 @@ export interface PlaybackNews {
   plan: { fromFrame: number; parts: PlanPart[] } | null
   begun: PlanPart[]
 }
-
-export const startPart = (settings: PlanSettings, sourceFrame: number): PlanPart => ({
-  outFrame: 0,
-  mode: 'stopped',
-  sourceFrame,
-  speed: 0,
-  endFrame: Infinity,
-  untilFrame: Infinity,
-  counts: [],
-  isJump: true,
-  fadeIn: 0,
-  fadeOut: 0,
-  turns: 0,
-  pass: 0,
-  settings
-})
 
 /**
  * Renders a take by commands. Frames are counted from the first one rendered; a sample leaves `delayFrames` after the frame
@@ -93,18 +81,23 @@ export const createPlayback = ({ source, settings, sourceFrame, makeStretcher = 
   }
   /** From here on the stretcher works again, on the plan as it is now. */
   const wake = (): void => {
-    if (isBroken) stretcher = makeStretcher(source)
+    const isFresh = isBroken
+    if (isFresh) stretcher = makeStretcher(source)
     isBroken = false
     shift = frame - stretcher.outFrame
     const parts = partsNow()
     const now = partAt(parts, frame)
-    stretcher.schedule(legOf({ ...now, outFrame: frame, sourceFrame: placeIn(now, frame) }, shift))
-    for (const part of parts) if (part.outFrame > frame) stretcher.schedule(legOf(part, shift))
+    // What it has mixed ahead already sounds on for a moment when it is woken in the middle of a pass.
+    const from = now.mode === 'playing' && !isFresh ? frame + settleTime(now) : frame
+    const first = partAt(parts, from)
+    stretcher.schedule(legOf({ ...first, outFrame: from, sourceFrame: placeIn(first, from) }, shift))
+    for (const part of parts) if (part.outFrame > from) stretcher.schedule(legOf(part, shift))
   }
   let isAsleep = true
 
   const isThere = (part: PlanPart, place: number, moreFrames: number): boolean => {
-    const { before, after } = stretcher.reach
+    const isPlain = part.speed === 1 && part.settings.ratio === 1
+    const { before, after } = isPlain ? plainReach : stretcher.reach
     return source.has(place - before, place + after + moreFrames * part.speed)
   }
   /** Looks at what will sound as soon as anything can be changed, and stops or goes on by what is there. */
@@ -180,7 +173,9 @@ export const createPlayback = ({ source, settings, sourceFrame, makeStretcher = 
     command: (command: PlanCommand, atFrame?: number): number => {
       const soonest = frame + settleTime(partAt(partsNow(), frame))
       const at = Math.max(soonest, Math.round(atFrame ?? soonest))
-      plan.give(command, at)
+      const lateFrames = atFrame === undefined ? 0 : at - Math.round(atFrame)
+      const canMakeUp = lateFrames > 0 && (command.kind === 'play' || command.kind === 'seek')
+      plan.give(canMakeUp ? { ...command, lateFrames } : command, at)
       sync()
       return at
     },
@@ -193,6 +188,13 @@ export const createPlayback = ({ source, settings, sourceFrame, makeStretcher = 
     },
     /** Renders the next frames into the arrays, one a channel. */
     process: (out: readonly Float32Array[], frames: number): void => renderBlock(out, frames),
+    /** The device has let some frames go by without asking for them: the plan goes on as if they had been heard. */
+    skip: (frames: number): void => {
+      sync()
+      noteBegun(frame + frames)
+      frame += frames
+      isAsleep = true
+    },
     /** What has happened since the last asking. */
     news: (): PlaybackNews | null => {
       sync()

@@ -28,7 +28,6 @@ export const fakePlayer = (): { player: FakePlayer; controls: TransportControls;
     volume: 0.7,
     loop: null,
     aids: plainAids,
-    media: document.createElement('audio'),
     clock: () => 0,
     positionAt: () => player.heardPosition,
     load: async () => undefined,

@@ -23,7 +23,6 @@ export const createStillPlayer = (durationSec: number): StillPlayer => {
     volume: 0.7,
     loop: null,
     aids: plainAids,
-    media: document.createElement('audio'),
     clock: () => 0,
     positionAt: () => position,
     load: async () => {},

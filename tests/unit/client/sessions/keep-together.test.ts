@@ -1,5 +1,6 @@
 import { describe, expect, it } from 'vitest'
-import { createKeepTogether, gapSec, goodEnoughSec } from '@client/features/sessions/keep-together'
+import { gapSec } from '@client/features/sessions/gap'
+import { createKeepTogether, goodEnoughSec } from '@client/features/sessions/keep-together'
 import type { Player, PlayerLoop } from '@client/transport/player'
 import type { SharedPlayback } from '@shared/timing/session-position'
 
@@ -28,6 +29,7 @@ const simulate = (startLagMs: number) => {
     }
   }
   const player = {
+    capabilities: { schedule: false },
     get state() {
       return state
     },

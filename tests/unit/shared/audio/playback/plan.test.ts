@@ -2,7 +2,7 @@ import fc from 'fast-check'
 import { describe, expect, it } from 'vitest'
 import { createPlan, mergeParts, partAt, placeIn } from '@shared/audio/playback/plan'
 import type { PlanCommand, PlanLoop, PlanPart, PlanSettings } from '@shared/audio/playback/plan-types'
-import { startPart } from '@shared/audio/playback/render'
+import { startPart } from '@shared/audio/playback/start-part'
 
 const rate = 48_000
 const total = 600 * rate

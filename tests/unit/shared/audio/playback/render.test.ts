@@ -159,6 +159,30 @@ describe('rendering a take', () => {
     ])
   })
 
+  it.each([1, 0.5])('stays in its place when the device leaves frames out, at %f of the speed', (speed) => {
+    const made = make(knocks)
+    give(made, { kind: 'rate', rate: speed })
+    made.playback.command({ kind: 'play' }, 2000)
+    made.render(128 * 200)
+    made.playback.skip(5555)
+    const from = made.playback.frame
+    const sound = made.render(rate)
+    const onset = sound.findIndex((value, n) => n > 4000 && Math.abs(value) > 0.05)
+    const place = (from + onset - made.late - 2000) * speed
+    expect(Math.abs(place - Math.round(place / (rate / 4)) * (rate / 4))).toBeLessThan(24)
+  })
+
+  it('makes up for a start and a jump that were asked for too late', () => {
+    const made = make(placeWave)
+    made.render(rate)
+    made.playback.command({ kind: 'seek', sourceFrame: 3 * rate }, rate / 2)
+    made.playback.command({ kind: 'play' }, rate / 2)
+    const started = made.render(rate)
+    expect(started[rate / 4]).toBe(Math.fround(placeWave(3 * rate + 0.75 * rate - made.late)))
+    made.playback.command({ kind: 'seek', sourceFrame: 8 * rate }, 1.5 * rate)
+    expect(made.render(rate / 2)[rate / 4]).toBe(Math.fround(placeWave(8 * rate + 0.75 * rate - made.late)))
+  })
+
   it('falls silent without a click when pieces are missing, and goes on at the same place when they come', () => {
     const made = make(tone, [0, 1, 2, 3])
     give(made, { kind: 'seek', sourceFrame: 2.5 * rate }, { kind: 'play' })
