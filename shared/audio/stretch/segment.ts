@@ -33,12 +33,13 @@ export interface SegmentPlan {
   from: number
   /** Inner frames after `innerAt` that are copied one to one. */
   copied: number
-  /** Source frame that a frame's centre should have for an inner centre after the copied part. */
-  wanted(innerCentre: number): number
+  /**
+   * Where a frame centred at the inner frame `centre` should be heading: a later inner frame and the source frame that
+   * belongs to it. `isEnd`: the next attack is there, and the sound before it is copied again. Null: not known yet.
+   */
+  aim(centre: number): { inner: number; source: number; isEnd: boolean } | null
   /** The last frames of what sounds before the cut, one window long; without it nothing is carried over. */
   tail?: readonly Float64Array[] | undefined
-  /** Source frame that no window may pass; asked anew for each frame. */
-  limit(wantedSource: number): number
 }
 
 export interface Segment {
@@ -123,6 +124,12 @@ export const createSegment = (plan: SegmentPlan): Segment => {
   let base = next - size
   let isChained = false
   let lastSource = sourceAt
+  let lastCentre = innerAt
+  let lastWanted = sourceAt
+  /** Source frame from which on nothing is heard: there the next attack begins. */
+  let edge = Infinity
+  /** How much earlier than it should the end is copied, once it is being copied. */
+  let endOffset: number | null = null
 
   const spread = (length: number) => Array.from({ length: channels }, () => new Float64Array(length))
   const spread32 = (length: number) => Array.from({ length: channels }, () => new Float32Array(length))
@@ -138,8 +145,20 @@ export const createSegment = (plan: SegmentPlan): Segment => {
   const [tr, ti] = [new Float64Array(size + 1), new Float64Array(size + 1)]
   const [sr, si] = [new Float64Array(size + 1), new Float64Array(size + 1)]
 
+  const hushFade = Math.round(source.sampleRate * 0.002)
+  /** Silence from `from` on, after a short fade. */
+  const hush = (data: readonly Float32Array[], from: number) => {
+    for (const one of data) {
+      for (let i = Math.max(0, from - hushFade); i < Math.min(one.length, from); i++) {
+        one[i] = one[i]! * ((from - i) / hushFade)
+      }
+      if (from < one.length) one.fill(0, Math.max(0, from))
+    }
+  }
+
   const analyse = (centre: number, re: Float64Array[], im: Float64Array[]): boolean => {
     if (!source.read(centre - half, raw)) return false
+    if (edge < centre + half) hush(raw, edge - (centre - half))
     for (let c = 0; c < channels; c++) {
       const data = raw[c]!
       for (let i = 0; i < size; i++) work[i] = data[i]! * window[i]!
@@ -187,6 +206,7 @@ export const createSegment = (plan: SegmentPlan): Segment => {
     if (count <= 1) return low
     const length = size + count - 1
     if (!source.read(low - hop - half, wide)) return null
+    if (edge < low - hop - half + length) hush(wide, edge - (low - hop - half))
     wideWork.fill(0)
     for (let c = 0; c < channels; c++) {
       const data = wide[c]!
@@ -298,6 +318,8 @@ export const createSegment = (plan: SegmentPlan): Segment => {
       }
     }
     lastSource = from + half
+    lastCentre = at + half
+    lastWanted = lastSource
     isChained = held.length > 0
     return true
   }
@@ -313,41 +335,60 @@ export const createSegment = (plan: SegmentPlan): Segment => {
     }
   }
 
+  /** Where the map wants the frame after the last one, and how far its place may be moved either way. */
+  const whereNext = (centre: number): { wanted: number; low: number; high: number } | null => {
+    const aim = plan.aim(centre)
+    if (!aim) return null
+    const reach = Math.round(hop * 0.8)
+    edge = aim.isEnd ? aim.source : Infinity
+    if (aim.isEnd && centre >= aim.inner - half) {
+      // The end is copied like the beginning, early rather than late, so that it meets the attack without a gap.
+      const ending = aim.source - Math.round(aim.inner - centre)
+      if (endOffset !== null) return { wanted: ending + endOffset, low: ending + endOffset, high: ending + endOffset }
+      return { wanted: ending, low: Math.max(sourceAt + plan.copied, ending - 2 * reach), high: ending }
+    }
+    endOffset = null
+    const [toInner, toSource] = aim.isEnd ? [aim.inner - half, aim.source - half] : [aim.inner, aim.source]
+    const share = Math.min(1, (centre - lastCentre) / Math.max(1, toInner - lastCentre))
+    const wanted = lastWanted + share * (toSource - lastWanted)
+    const high = Math.min(Math.round(wanted + reach), edge - half)
+    const lowest = Math.min(sourceAt + plan.copied, high)
+    return { wanted, high, low: Math.max(lowest, Math.min(Math.round(wanted - reach), high), high - 2 * reach) }
+  }
+
   const turnedFrame = (at: number): boolean => {
     const centre = at + half
-    const wanted = plan.wanted(centre)
-    const highest = plan.limit(wanted) - half
-    const lowest = sourceAt + plan.copied
-    const reach = bench.hop * 0.8
-    const high = Math.max(Math.min(Math.round(wanted + reach), highest), Math.min(lowest, highest))
-    const low = Math.max(
-      Math.min(Math.round(wanted - reach), high),
-      Math.min(lowest, high),
-      high - 2 * Math.round(reach)
-    )
     if (!isChained) {
       // The last frame was a copy: its spectrum is the recording's there.
+      edge = Infinity
       if (!analyse(lastSource, yr, yi)) return false
     }
+    const where = whereNext(centre)
+    if (!where) return false
+    const { wanted, low, high } = where
     const best = mostAlike(wanted, low, high)
     if (best === null || !analyse(best - hop, pr, pi)) return false
     // A sound that dies quickly must not flicker where the likest place lies before or after the wanted one.
-    const due = Math.max(Math.min(Math.round(wanted), highest), Math.min(lowest, highest))
-    const level = due === best ? 1 : energyAt(due)
-    if (level === null || !analyse(best, xr, xi)) return false
+    const due = Math.max(low, Math.min(Math.round(wanted), high))
+    const level = due === best || endOffset !== null ? null : energyAt(due)
+    if (!analyse(best, xr, xi)) return false
     turn()
-    if (due !== best) {
-      const gain = Math.sqrt((level + 1e-12) / (energyOfRaw() + 1e-12))
-      const kept = Math.max(0.5, Math.min(2, gain))
+    if (level !== null) {
+      const gain = Math.max(0.5, Math.min(2, Math.sqrt((level + 1e-12) / (energyOfRaw() + 1e-12))))
       for (let c = 0; c < channels; c++) {
         for (let k = 0; k < bins; k++) {
-          yr[c]![k] = yr[c]![k]! * kept
-          yi[c]![k] = yi[c]![k]! * kept
+          yr[c]![k] = yr[c]![k]! * gain
+          yi[c]![k] = yi[c]![k]! * gain
         }
       }
     }
     sound(at)
+    const aim = plan.aim(centre)
+    if (aim?.isEnd && centre >= aim.inner - half && endOffset === null)
+      endOffset = best - (aim.source - Math.round(aim.inner - centre))
     lastSource = best
+    lastCentre = centre
+    lastWanted = wanted
     isChained = true
     return true
   }

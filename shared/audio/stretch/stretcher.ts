@@ -15,6 +15,8 @@ const modeFadeSec = 0.012
 const blockFrames = 256
 /** A stretched piece that ran ahead (its attack was copied at full speed) comes back to the map within about this time. */
 const catchUpSec = 0.45
+/** Attacks closer than this make one. */
+const leastApartSec = 0.02
 /** How far ahead a piece looks for the next attack when it chooses its window, seconds of source. */
 const lookSec = 1.1
 
@@ -116,18 +118,24 @@ export const createStretcher = (source: SampleSource): Stretcher => {
       }
     }
     if (now.isPlain || !now.segment) return jump
-    const horizon = innerFrame + blockFrames + size
-    const here = sourceAtInner(innerFrame)
-    const first = Math.max(now.cut.source + Math.round(0.02 * sampleRate), Math.floor(here) - size)
-    const onsets = finder.between(first, Math.max(first, Math.ceil(sourceAtInner(horizon)) + cutFade))
-    if (!onsets) return 'wait'
-    for (const onset of onsets) {
-      const inner = innerOfOnset(onset, innerFrame)
-      if (inner === null || inner < from + cutFade || inner < now.cut.inner + Math.round(0.012 * sampleRate)) continue
-      if (jump && inner >= jump.inner - cutFade) break
-      return { inner, source: onset.cut, kind: 'attack' }
-    }
+    const next = following(now)
+    if (next === 'wait') return 'wait'
+    if (next && (!jump || next.inner < jump.inner - cutFade)) return { ...next, kind: 'attack' }
     return jump
+  }
+
+  /** The attack that ends a piece, and the inner frame at which it has to begin. */
+  const following = (one: Pick<Piece, 'cut'>): { inner: number; source: number } | null | 'wait' => {
+    const here = Math.max(one.cut.inner, innerFrame)
+    const first = one.cut.source + Math.round(leastApartSec * sampleRate)
+    const onsets = finder.between(first, Math.max(first, Math.ceil(sourceAtInner(here) + lookSec * sampleRate)))
+    if (!onsets) return 'wait'
+    const earliest = Math.max(one.cut.inner + Math.round(0.012 * sampleRate), innerFrame + cutFade)
+    for (const onset of onsets) {
+      const inner = innerOfOnset(onset, here)
+      if (inner !== null && inner >= earliest) return { inner, source: onset.cut }
+    }
+    return null
   }
 
   /** What the piece now sounding gives just before the inner frame `to`; undefined when it has not got it. */
@@ -143,19 +151,14 @@ export const createStretcher = (source: SampleSource): Stretcher => {
     const onsets = finder.between(cut.source - size, cut.source + Math.round(sampleRate * lookSec))
     if (!onsets) return 'wait'
     const attack = cut.kind === 'attack' ? cut.source : onsets.filter((one) => one.cut <= cut.source).at(-1)?.cut
-    const following = onsets.find((one) => one.cut > cut.source + 0.02 * sampleRate)?.cut
-    const room = (following ?? Infinity) - cut.source
-    const bench = benches.find((one) => one.size * (one.size > size ? 6 : 0.9) <= room) ?? benches.at(-1)!
-    const half = bench.size >> 1
-    const longest = Math.max(0.75 * half, Math.min(half + bench.hop, room - half - bench.hop))
-    const copied = Math.max(0, Math.round(attack === undefined ? 0 : attack + longest - cut.source))
+    const next = following({ cut })
+    if (next === 'wait') return 'wait'
     const inner = cut.inner
-    const start = inner + copied
-    const aheadBy = cut.source + copied - sourceAtInner(start)
-    const slope = leg.speed / leg.ratio
-    // Back on the map before the next attack, where that is near: a note's release belongs to it.
-    const left = following === undefined ? Infinity : ((following - bench.size - cut.source) / slope - copied) * 0.9
-    const catchUp = Math.max(1, Math.min(left, Math.max(catchUpSec * sampleRate, (2 * Math.abs(aheadBy)) / slope)))
+    const room = next ? Math.min(next.source - cut.source, next.inner - inner) : Infinity
+    const bench = benches.find((one) => one.size * (one.size > size ? 6 : 1.05) <= room) ?? benches.at(-1)!
+    const half = bench.size >> 1
+    const longest = Math.max(0.75 * half, Math.min(half + bench.hop, room - bench.size))
+    const copied = Math.max(0, Math.round(attack === undefined ? 0 : attack + longest - cut.source))
     const segment = createSegment({
       bench,
       source,
@@ -164,10 +167,12 @@ export const createStretcher = (source: SampleSource): Stretcher => {
       from: inner - fade,
       copied,
       tail: cut.kind === 'attack' && piece ? tailOf(piece, inner, bench.size) : undefined,
-      wanted: (centre) => sourceAtInner(centre) + aheadBy * Math.max(0, 1 - (centre - start) / catchUp),
-      limit: (wanted) => {
-        const ahead = finder.between(cut.source + Math.round(0.02 * sampleRate), Math.ceil(wanted) + bench.size)
-        return ahead?.[0]?.cut ?? Infinity
+      aim: (centre) => {
+        const end = following({ cut })
+        if (end === 'wait') return null
+        if (end) return { ...end, isEnd: true }
+        const ahead = centre + Math.round(catchUpSec * sampleRate)
+        return { inner: ahead, source: sourceAtInner(ahead), isEnd: false }
       }
     })
     return { cut, fade, segment, isPlain: false, copied }
