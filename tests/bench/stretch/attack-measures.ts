@@ -12,16 +12,19 @@ export interface AttackOptions {
 }
 
 export interface NoteMeasure {
-  /** Where the fine envelope is first half up, seconds from the true place. */
+  /** Where the envelope over a period is first half up, seconds from the true place. */
   place: number
   /** The same in the band of the noise. */
   noisePlace: number
   /** Of the fine envelope from the last time under 10 % to the first time over 90 %, seconds. */
   rise: number
-  /** Mean square from 60 to 5 ms before, to that of the first 50 ms. */
+  /** Mean square from 60 to 5 ms (of the output) before, and of the first 50 ms. */
   before: number
-  /** Rises of 3 dB and more after the first, until the next note. */
+  loud: number
+  /** Tops after the first until the next note that stand 4 dB above what is between: of the level over three quarters of a period. */
   rises: number
+  /** The same of the noise's level, 6 dB. */
+  noiseRises: number
 }
 
 interface Climb {
@@ -90,25 +93,36 @@ const furtherRises = (level: Float64Array, from: number, to: number, by: number,
   return Math.max(0, rises.filter((rise) => rise.level > top - near).length - 1)
 }
 
-/** `attacks` in the time and pitch of `x`; `stretch`: how much longer it is than the source. */
+/**
+ * `attacks` in the time and pitch of `x`. `stretch`: how much longer it is than the source; `lookBack`: how long the time before an
+ * attack is that is looked at, to that of the output (1 for the output, the speed for the source).
+ */
 export const measureNotes = (
   x: ArrayLike<number>,
   rate: number,
   attacks: readonly Attack[],
   stretch: number,
+  lookBack: number,
   options: AttackOptions
 ): NoteMeasure[] => {
   const fine = envelope(x, options.fineSec * rate)
-  const noise = envelope(highPass(x, options.noiseHz, rate), 0.0015 * rate)
-  const noiseLevel = noise.map(decibels)
+  const noiseBand = highPass(x, options.noiseHz, rate)
+  const noise = envelope(noiseBand, 0.0015 * rate)
+  const noiseLevel = envelope(noiseBand, 0.003 * rate).map(decibels)
   const sums = energySums(x)
-  const periodLevels = new Map<number, Float64Array>()
-  const levelOver = (hertz: number): Float64Array => {
-    const width = Math.max(0.006, 1 / hertz)
-    const key = Math.round(width * 1e5)
-    const kept = periodLevels.get(key) ?? envelope(x, width * rate * 0.75).map(decibels)
-    periodLevels.set(key, kept)
-    return kept
+  const kept = new Map<number, Float64Array>()
+  const envelopeOver = (seconds: number): Float64Array => {
+    const width = Math.round(seconds * rate)
+    const made = kept.get(width) ?? envelope(x, width)
+    kept.set(width, made)
+    return made
+  }
+  const keptLevels = new Map<Float64Array, Float64Array>()
+  const levelOver = (seconds: number): Float64Array => {
+    const linear = envelopeOver(seconds)
+    const made = keptLevels.get(linear) ?? linear.map(decibels)
+    keptLevels.set(linear, made)
+    return made
   }
   return attacks.map((attack, i) => {
     const at = attack.sec * rate
@@ -117,18 +131,20 @@ export const measureNotes = (
     const from = at - Math.min(0.06 * rate, gapBefore * 0.4)
     const to = at + Math.min(0.12 * rate, gap * 0.6)
     const climb = climbOf(fine, from, at, to)
+    const placeClimb = climbOf(envelopeOver(Math.max(options.fineSec, 1 / attack.hertz)), from, at, to)
     const noiseClimb = climbOf(noise, Math.max(from, at - 0.04 * rate), at, at + 0.04 * rate)
     const [begin, end] = [at - Math.min(0.05 * rate, gapBefore * 0.3), at + gap - Math.min(0.06 * rate, gap * 0.35)]
-    const early = sums(at - 0.06 * rate, at - 0.005 * rate) / (0.055 * rate)
+    const [far, close] = [0.06 * rate * lookBack, 0.005 * rate * lookBack]
+    const early = sums(at - far, at - close) / (far - close)
     const loud = sums(at, at + 0.05 * rate) / (0.05 * rate)
     return {
-      place: climb.at50 / rate - attack.sec,
+      place: placeClimb.at50 / rate - attack.sec,
       noisePlace: noiseClimb.at50 / rate - attack.sec,
       rise: (climb.at90 - climb.at10) / rate,
-      before: early / Math.max(loud, 1e-12),
-      rises:
-        furtherRises(levelOver(attack.hertz), begin, end, 3, 12) +
-        furtherRises(noiseLevel, begin, Math.min(end, at + 0.12 * rate * stretch), 4, 8)
+      before: early,
+      loud,
+      rises: furtherRises(levelOver(0.75 * Math.max(0.006, 1 / attack.hertz)), begin, end, 4, 12),
+      noiseRises: furtherRises(noiseLevel, begin, Math.min(end, at + 0.12 * rate * stretch), 6, 8)
     }
   })
 }
@@ -136,7 +152,7 @@ export const measureNotes = (
 export interface AttackFigures {
   /** The common one, milliseconds; positive is late. Against the source's own way from the true place to half up. */
   offset: number
-  /** The same of the noise. */
+  /** Of the noise, against the true place itself. */
   noiseOffset: number
   /** What 95 % of the places do not exceed once the common offset is taken off, milliseconds. */
   place95: number
@@ -150,21 +166,26 @@ export interface AttackFigures {
 
 const middleOf = (values: readonly number[]): number => median(values) ?? NaN
 
-/** `before` of the source must be taken where the stretched one looks: `sourceBefore`. */
+/** By the level or by the noise, whichever tells more. */
+const furtherThan = (output: NoteMeasure, source: NoteMeasure | undefined): number =>
+  Math.max(0, output.rises - (source?.rises ?? 0), output.noiseRises - (source?.noiseRises ?? 0))
+
 export const compareAttacks = (source: readonly NoteMeasure[], output: readonly NoteMeasure[]): AttackFigures => {
   const late = output.map((note, i) => (note.place - (source[i]?.place ?? 0)) * 1000)
   const offset = middleOf(late)
   const off = late.map((value) => Math.abs(value - offset))
   const riseOf = (notes: readonly NoteMeasure[]): number => middleOf(notes.map((note) => note.rise))
-  const excess = output.map((note, i) => Math.max(0, note.before - (source[i]?.before ?? 0)))
+  const excess = output.map(
+    (note, i) => Math.max(0, note.before - (source[i]?.before ?? 0)) / Math.max(1e-12, source[i]?.loud ?? 0)
+  )
   return {
     offset,
-    noiseOffset: middleOf(output.map((note, i) => (note.noisePlace - (source[i]?.noisePlace ?? 0)) * 1000)),
+    noiseOffset: middleOf(output.map((note) => note.noisePlace * 1000)),
     place95: percentile(off, 0.95),
     placeWorst: Math.max(...off),
     rise: riseOf(output) / riseOf(source),
     riseSourceMs: riseOf(source) * 1000,
-    doubled: output.reduce((sum, note, i) => sum + Math.max(0, note.rises - (source[i]?.rises ?? 0)), 0),
+    doubled: output.reduce((sum, note, i) => sum + furtherThan(note, source[i]), 0),
     preEcho: powerDecibels(Math.max(1e-8, excess.reduce((a, b) => a + b, 0) / Math.max(1, excess.length)))
   }
 }

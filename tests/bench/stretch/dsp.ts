@@ -1,35 +1,52 @@
 // The signal arithmetic that the measures share. Levels are amplitudes unless a name says decibels.
 
+const twiddles = new Map<number, { cos: Float64Array; sin: Float64Array }>()
+
+const twiddlesOf = (n: number): { cos: Float64Array; sin: Float64Array } => {
+  const kept = twiddles.get(n)
+  if (kept) return kept
+  const angle = (_: unknown, i: number): number => (-2 * Math.PI * i) / n
+  const angles = Float64Array.from({ length: n / 2 }, angle)
+  const made = { cos: angles.map(Math.cos), sin: angles.map(Math.sin) }
+  twiddles.set(n, made)
+  return made
+}
+
 /** In place, length a power of two. */
 export const fft = (re: Float64Array, im: Float64Array): void => {
   const n = re.length
+  const { cos, sin } = twiddlesOf(n)
   for (let i = 1, j = 0; i < n; i += 1) {
     let bit = n >> 1
     for (; j & bit; bit >>= 1) j ^= bit
     j ^= bit
     if (i < j) {
-      const [a, b] = [re[i] as number, im[i] as number]
+      const a = re[i] as number
       re[i] = re[j] as number
-      im[i] = im[j] as number
       re[j] = a
+      const b = im[i] as number
+      im[i] = im[j] as number
       im[j] = b
     }
   }
   for (let size = 2; size <= n; size <<= 1) {
     const half = size >> 1
-    const step = (-2 * Math.PI) / size
-    for (let k = 0; k < half; k += 1) {
-      const [c, s] = [Math.cos(step * k), Math.sin(step * k)]
-      for (let a = k; a < n; a += size) {
+    const step = n / size
+    for (let start = 0; start < n; start += size)
+      for (let k = 0, t = 0; k < half; k += 1, t += step) {
+        const a = start + k
         const b = a + half
-        const [x, y] = [re[b] as number, im[b] as number]
-        const [tr, ti] = [x * c - y * s, x * s + y * c]
+        const c = cos[t] as number
+        const s = sin[t] as number
+        const x = re[b] as number
+        const y = im[b] as number
+        const tr = x * c - y * s
+        const ti = x * s + y * c
         re[b] = (re[a] as number) - tr
         im[b] = (im[a] as number) - ti
         re[a] = (re[a] as number) + tr
         im[a] = (im[a] as number) + ti
       }
-    }
   }
 }
 
@@ -74,27 +91,28 @@ export const energySums = (x: ArrayLike<number>): RangeSum => {
   return (from, to) => upTo(to) - upTo(from)
 }
 
-/** Moving average over `width` frames (a fraction is fine), centred. */
+/** Moving average over an odd number of frames, centred. */
 const smooth = (x: Float64Array, width: number): Float64Array => {
-  const sums = new Float64Array(x.length + 1)
-  for (let i = 0; i < x.length; i += 1) sums[i + 1] = (sums[i] as number) + (x[i] as number)
+  const half = Math.max(0, Math.round((width - 1) / 2))
   const out = new Float64Array(x.length)
-  const upTo = (at: number): number => {
-    const kept = Math.max(0, Math.min(x.length, at))
-    const whole = Math.floor(kept)
-    const base = sums[whole] as number
-    return whole === x.length ? base : base + (kept - whole) * ((sums[whole + 1] as number) - base)
+  const n = x.length
+  let sum = 0
+  for (let i = 0; i < Math.min(n, half); i += 1) sum += x[i] as number
+  for (let i = 0; i < n; i += 1) {
+    if (i + half < n) sum += x[i + half] as number
+    if (i - half - 1 >= 0) sum -= x[i - half - 1] as number
+    out[i] = Math.max(0, sum / (2 * half + 1))
   }
-  for (let i = 0; i < x.length; i += 1)
-    out[i] = Math.max(0, (upTo(i + 0.5 + width / 2) - upTo(i + 0.5 - width / 2)) / width)
   return out
 }
 
 /** Root of the mean square: a box of `width` frames twice, so a triangle of twice that; a whole period makes it flat. */
 export const envelope = (x: ArrayLike<number>, width: number): Float64Array => {
-  const squares = Float64Array.from(x, (value) => value * value)
-  const once = smooth(smooth(squares, Math.max(1, width)), Math.max(1, width))
-  return once.map(Math.sqrt)
+  const out = new Float64Array(x.length)
+  for (let i = 0; i < out.length; i += 1) out[i] = (x[i] as number) ** 2
+  const smoothed = smooth(smooth(out, width), width)
+  for (let i = 0; i < out.length; i += 1) smoothed[i] = Math.sqrt(smoothed[i] as number)
+  return smoothed
 }
 
 /** Second-order Butterworth run forwards and backwards: no delay, 24 dB an octave. */
@@ -106,16 +124,24 @@ export const highPass = (x: ArrayLike<number>, hertz: number, rate: number): Flo
   const [a1, a2] = [(-2 * Math.cos(w)) / a0, (1 - alpha) / a0]
   const pass = (signal: Float64Array): Float64Array => {
     const out = new Float64Array(signal.length)
-    let [x1, x2, y1, y2] = [0, 0, 0, 0]
+    let x1 = 0
+    let x2 = 0
+    let y1 = 0
+    let y2 = 0
     for (let i = 0; i < signal.length; i += 1) {
       const now = signal[i] as number
       const y = b0 * now + b1 * x1 + b0 * x2 - a1 * y1 - a2 * y2
-      ;[x2, x1, y2, y1] = [x1, now, y1, y]
+      x2 = x1
+      x1 = now
+      y2 = y1
+      y1 = y
       out[i] = y
     }
     return out
   }
-  return pass(pass(Float64Array.from(x)).reverse()).reverse()
+  const copy = new Float64Array(x.length)
+  copy.set(x)
+  return pass(pass(copy).toReversed()).toReversed()
 }
 
 export interface Phasor {
@@ -126,17 +152,26 @@ export interface Phasor {
 /** Complex amplitude at one frequency of the Hann-windowed frame beginning at `from`, phase counted from frame 0. */
 export const phasorAt = (x: ArrayLike<number>, from: number, length: number, cyclesPerFrame: number): Phasor => {
   const step = 2 * Math.PI * cyclesPerFrame
-  const turn = { re: Math.cos(step), im: -Math.sin(step) }
-  const lobe = { re: Math.cos((2 * Math.PI) / length), im: Math.sin((2 * Math.PI) / length) }
-  let [cr, ci] = [Math.cos(step * from), -Math.sin(step * from)]
-  let [wr, wi] = [1, 0]
-  let [re, im] = [0, 0]
+  const turnRe = Math.cos(step)
+  const turnIm = -Math.sin(step)
+  const lobeRe = Math.cos((2 * Math.PI) / length)
+  const lobeIm = Math.sin((2 * Math.PI) / length)
+  let cr = Math.cos(step * from)
+  let ci = -Math.sin(step * from)
+  let wr = 1
+  let wi = 0
+  let re = 0
+  let im = 0
   for (let i = 0; i < length; i += 1) {
     const value = (x[from + i] ?? 0) * (1 - wr)
     re += value * cr
     im += value * ci
-    ;[cr, ci] = [cr * turn.re - ci * turn.im, cr * turn.im + ci * turn.re]
-    ;[wr, wi] = [wr * lobe.re - wi * lobe.im, wr * lobe.im + wi * lobe.re]
+    const turned = cr * turnRe - ci * turnIm
+    ci = cr * turnIm + ci * turnRe
+    cr = turned
+    const moved = wr * lobeRe - wi * lobeIm
+    wi = wr * lobeIm + wi * lobeRe
+    wr = moved
   }
   return { re: (2 * re) / length, im: (2 * im) / length }
 }

@@ -1,6 +1,6 @@
 // Who stretches: our own core in this process, or any program that reads and writes a file.
 import { execFileSync } from 'node:child_process'
-import { mkdirSync } from 'node:fs'
+import { existsSync, mkdirSync } from 'node:fs'
 import { join } from 'node:path'
 import { type Change, ratioOf } from './cases.ts'
 import { readSound, type Sound, writeWav } from './wav.ts'
@@ -24,7 +24,7 @@ export const ownEngine = async (): Promise<Engine> => {
   })
 }
 
-/** Programs to compare with. */
+/** Programs to compare with, and our own from its command line. */
 export const commands: Record<string, string> = {
   rubberband: 'rubberband -3 -q -t {stretch} -f {ratio} {in} {out}',
   rubberband2: 'rubberband -2 -q -t {stretch} -f {ratio} {in} {out}',
@@ -32,12 +32,14 @@ export const commands: Record<string, string> = {
   cli: 'npm run --silent stretch -- {in} {out} --speed {speed} --semitones {semitones} --cents {cents}'
 }
 
+/** `isReused`: what an earlier run left in the folder is judged again. */
 export const programEngine =
-  (template: string, folder: string): Engine =>
+  (template: string, folder: string, isReused: boolean): Engine =>
   async (source, change, name) => {
     mkdirSync(folder, { recursive: true })
     const base = join(folder, name.replace(/[^\w.+-]+/g, '-'))
     const [from, to] = [`${base}-in.wav`, `${base}-out.wav`]
+    if (isReused && existsSync(to)) return readSound(to, source.sampleRate, source.channels.length)
     writeWav(from, source)
     const words: Record<string, string> = {
       in: from,

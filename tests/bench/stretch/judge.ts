@@ -48,8 +48,15 @@ const attackFigures = (one: Case, { attacks = [], sound }: Material, output: Sou
     noiseHz: (isClick ? 500 : 4500) * by
   })
   const warped = attacks.map(({ sec, hertz }) => ({ sec: sec / one.speed, hertz: hertz * ratio }))
-  const before = measureNotes(middleChannel(sound.channels), sound.sampleRate, attacks, 1, options(1))
-  const after = measureNotes(middleChannel(output.channels), output.sampleRate, warped, 1 / one.speed, options(ratio))
+  const before = measureNotes(middleChannel(sound.channels), sound.sampleRate, attacks, 1, one.speed, options(1))
+  const after = measureNotes(
+    middleChannel(output.channels),
+    output.sampleRate,
+    warped,
+    1 / one.speed,
+    1,
+    options(ratio)
+  )
   return { ...compareAttacks(before, after) }
 }
 
@@ -79,6 +86,7 @@ export const judge = (one: Case, material: Material, output: Sound): Figures => 
   if (attacks && (one.group === 'plucks' || one.group === 'clicks'))
     Object.assign(figures, attackFigures(one, material, output))
   if (one.group === 'clips') Object.assign(figures, clipFigures(one, sound, output))
-  if (!isShifted && one.group !== 'tones') figures.distance = spectralDistance(sound, output, one.speed)
+  if (!isShifted && one.group !== 'tones' && one.group !== 'clicks')
+    figures.distance = spectralDistance(sound, output, one.speed, one.group === 'clips' ? 40 : 50)
   return { ...figures, ...measureWhole(sound, output, one.speed) }
 }

@@ -16,6 +16,8 @@ const wholeLimits: Limit[] = [
   { figure: 'energyDb', most: 1 },
   { figure: 'peak', most: 0.999 }
 ]
+/** Clicks that keep their attack are as loud and as many over a longer time: their energy over all must fall. */
+const clickWholeLimits = wholeLimits.filter((limit) => limit.figure !== 'energyDb')
 
 /** Places may be off by twice as much at quarter speed. */
 const slowness = (speed: number): number => (speed <= 0.25 ? 2 : 1)
@@ -49,12 +51,13 @@ export const limitsOf = (one: Case, facts: { hertz?: number }): Limit[] => {
     case 'plucks':
       return [
         ...wholeLimits,
-        ...attackLimits(one, hertz < 60 ? 10 : 5),
+        // A waveform shifted by resampling rises by as much slower or faster: the rise is judged unshifted.
+        ...attackLimits(one, hertz < 60 ? 10 : 5).filter((limit) => !isShifted || limit.figure !== 'rise'),
         { figure: 'noiseOffset', most: 5 * slowness(speed) },
         ...distance(speed < 0.5 ? 3.1 : 3)
       ]
     case 'clicks':
-      return [...wholeLimits, ...attackLimits(one, 2)]
+      return [...clickWholeLimits, ...attackLimits(one, 2)]
     case 'mixes':
       return [...wholeLimits, { figure: 'cents', most: 1 }, { figure: 'image', most: 0.5 }, ...distance(2)]
     case 'clips':

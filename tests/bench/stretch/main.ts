@@ -1,6 +1,6 @@
 // Judges the stretch engine, or a program to compare with, on tones of our own.
 // node --import tsx tests/bench/stretch/main.ts [--only tones,plucks] [--name text] [--engine rubberband | --command "…{in} {out}…"]
-//   [--keep folder] [--json file]
+//   [--keep folder [--reuse]] [--json file]
 import { mkdtempSync, rmSync, writeFileSync } from 'node:fs'
 import { tmpdir } from 'node:os'
 import { join } from 'node:path'
@@ -27,6 +27,7 @@ const { values: options } = parseArgs({
     engine: { type: 'string', default: 'ours' },
     command: { type: 'string' },
     keep: { type: 'string' },
+    reuse: { type: 'boolean', default: false },
     json: { type: 'string' }
   }
 })
@@ -37,7 +38,7 @@ const short = (value: number): string =>
 
 const engineOf = async (folder: string): Promise<Engine> => {
   const { command = commands[options.engine], engine } = options
-  if (command) return programEngine(command, folder)
+  if (command) return programEngine(command, folder, options.reuse)
   if (engine === 'identity') return identity
   return ownEngine()
 }

@@ -49,7 +49,7 @@ export interface PluckPlan {
   isRinging?: boolean
 }
 
-/** 24 notes; ringing ones sound into the next, the others are stopped before it. */
+/** 24 notes; ringing ones are stopped by the next as on one string, the others before it. */
 export const pluckMaterial = ({ hertz, isMelody, isRinging }: PluckPlan): Material => {
   const sampleRate = hertz > 60 ? 44_100 : 48_000
   const random = createRandom(1000 + Math.round(hertz) + (isMelody ? 7 : 0))
@@ -63,7 +63,7 @@ export const pluckMaterial = ({ hertz, isMelody, isRinging }: PluckPlan): Materi
   const out = new Float32Array(Math.round((sec + 0.4) * sampleRate))
   attacks.forEach((attack, i) => {
     const next = attacks[i + 1]?.sec ?? sec
-    const holdSec = isRinging ? next - attack.sec + 0.05 : (next - attack.sec) * 0.78
+    const holdSec = isRinging ? next - attack.sec : (next - attack.sec) * 0.78
     const level = 0.7 + 0.3 * random()
     addPluck(out, { ...plainPluck, ...attack, startSec: attack.sec, holdSec, level }, sampleRate, random)
   })
@@ -121,7 +121,7 @@ export const mixMaterial = (isHeld: boolean): Material => {
       const decay = isHeld ? 0.3 : 1.5
       addVoice(mono, { hertz, startSec: begin, holdSec: 1.9, level: 0.3, decay, attackSec: 0.02 }, sampleRate, random)
       pan(mono, 0.35 + 0.2 * i, sides)
-      pitches.push({ hertz, fromSec: begin + 0.2, toSec: begin + 1.75 })
+      pitches.push({ hertz, fromSec: begin + 0.2, toSec: begin + 0.95 })
     })
   })
   return { sound: finish(sides, sampleRate), pitches, attacks }
@@ -176,12 +176,13 @@ export const bandMaterial = (beatSec: number): Material => {
 
 const clipFolder = join(import.meta.dirname, '../../../../shared/audio-bench/clips')
 
-/** Rendered clips kept beside the project, when they are there. */
+/** Rendered clips kept beside the project, when they are there; not those through a telephone, in which noise hides the onsets. */
 export const clipNames = (): string[] =>
   existsSync(clipFolder)
     ? readdirSync(clipFolder)
         .filter((name) => name.endsWith('.json'))
         .map((name) => name.replace('.json', ''))
+        .filter((name) => !readFileSync(join(clipFolder, `${name}.json`), 'utf8').includes('"condition": "phone"'))
         .sort()
     : []
 

@@ -34,10 +34,10 @@ const trackPartial = (
   x: ArrayLike<number>,
   rate: number,
   near: number,
-  periodSec: number,
+  frameSec: number,
   { from, to }: Span
 ): Track => {
-  const length = Math.min(to - from, Math.round(Math.max(0.12, 8 * periodSec) * rate))
+  const length = Math.min(to - from, Math.round(frameSec * rate))
   const hop = Math.max(1, Math.floor(length / 4))
   let [last, turns] = [0, 0]
   let [n, sumT, sumP, sumTT, sumTP, sumA] = [0, 0, 0, 0, 0, 0]
@@ -59,11 +59,18 @@ const trackPartial = (
   return { hertz: near + slope / (2 * Math.PI), level: sumA / Math.max(1, n) }
 }
 
-/** Hertz of one sinusoid near `expected` within the span, and its level. */
-export const pitchNear = (x: ArrayLike<number>, rate: number, expected: number, span: Span): Track => {
+/** Hertz of one sinusoid near `expected` within the span, and its level; frames of at least `leastSec` keep neighbours apart. */
+export const pitchNear = (
+  x: ArrayLike<number>,
+  rate: number,
+  expected: number,
+  span: Span,
+  leastSec: number
+): Track => {
+  const frameSec = Math.max(leastSec, 8 / expected)
   const rough = roughPitch(x, rate, expected, span)
-  const first = trackPartial(x, rate, rough, 1 / expected, span)
-  return trackPartial(x, rate, first.hertz, 1 / expected, span)
+  const first = trackPartial(x, rate, rough, frameSec, span)
+  return trackPartial(x, rate, first.hertz, frameSec, span)
 }
 
 export const centsBetween = (hertz: number, expected: number): number => 1200 * Math.log2(hertz / expected)
@@ -86,10 +93,11 @@ export const measureTone = (
   span: Span
 ): ToneMeasure => {
   const present = Array.from({ length: count }, (_, i) => i + 1).filter((k) => k * expected < rate * 0.45)
-  let hertz = pitchNear(x, rate, expected, span).hertz
+  const frameSec = Math.max(0.12, 8 / expected)
+  let hertz = pitchNear(x, rate, expected, span, frameSec).hertz
   let tracks: Track[] = []
   for (let round = 0; round < 2; round += 1) {
-    tracks = present.map((k) => trackPartial(x, rate, k * hertz, 1 / expected, span))
+    tracks = present.map((k) => trackPartial(x, rate, k * hertz, frameSec, span))
     // Each partial tells the fundamental k times as finely; weighted by its power.
     const weights = tracks.map((track, i) => (present[i] as number) ** 2 * track.level ** 2)
     const whole = weights.reduce((a, b) => a + b, 0)

@@ -7,14 +7,13 @@ import { median } from '@shared/timing/statistics'
 import { percentile } from '../statistics.ts'
 
 const frameSize = 4096
-const floorDb = 50
 
 /**
  * Log-spectral distance, decibels: frames of the source against those at the same place of the take in the output, Hann,
- * 4096 long, every 50 ms of the source; power floored 50 dB below the source frame's peak; root mean square over the bins
- * below 10 kHz, mean over the frames that are within 50 dB of the loudest.
+ * 4096 long, every 50 ms of the source; power floored `floorDb` below the source frame's peak; root mean square over the bins
+ * below 10 kHz, mean over the frames that are within `floorDb` of the loudest.
  */
-export const spectralDistance = (source: Sound, output: Sound, speed: number): number => {
+export const spectralDistance = (source: Sound, output: Sound, speed: number, floorDb: number): number => {
   const [a, b] = [middleChannel(source.channels), middleChannel(output.channels)]
   const rate = source.sampleRate
   const window = hann(frameSize)
@@ -84,25 +83,27 @@ export const measureMix = (
   const alone = pitches.filter((one) =>
     pitches.every((other) => {
       if (other === one || other.toSec <= one.fromSec || other.fromSec >= one.toSec) return true
-      return [1, 2, 3, 4, 5, 6, 7, 8].every((k) => Math.abs(k * other.hertz - one.hertz) > 14)
+      return Array.from({ length: 24 }, (_, k) => (k + 1) * other.hertz).every(
+        (hertz) => Math.abs(hertz / one.hertz - 1) > 0.05
+      )
     })
   )
   const rows = alone.map(({ hertz, fromSec, toSec }) => {
     const inSource = { from: Math.round(fromSec * rate), to: Math.round(toSec * rate) }
     const inOutput = { from: Math.round((fromSec / speed) * rate), to: Math.round((toSec / speed) * rate) }
-    const true_ = pitchNear(before, rate, hertz, inSource).hertz
-    const got = pitchNear(after, rate, hertz * ratio, inOutput).hertz
+    const known = pitchNear(before, rate, hertz, inSource, 0.3).hertz
+    const got = pitchNear(after, rate, hertz * ratio, inOutput, 0.3).hertz
     return {
-      cents: Math.abs(centsBetween(got, true_ * ratio)),
-      image: Math.abs(sided(output, got, inOutput.from, inOutput.to) - sided(source, true_, inSource.from, inSource.to))
+      cents: Math.abs(centsBetween(got, known * ratio)),
+      image: Math.abs(sided(output, got, inOutput.from, inOutput.to) - sided(source, known, inSource.from, inSource.to))
     }
   })
   return { cents: Math.max(...rows.map((row) => row.cents)), image: Math.max(...rows.map((row) => row.image)) }
 }
 
 /**
- * Onsets by spectral flux: 1024 Hann frames every 5 ms, differences of the logarithm of 1 + 1000 x amplitude over 15 ms, summed
- * where positive; peaks above the running median by a tenth of the 95th percentile, 60 ms x stretch apart.
+ * Onsets by spectral flux: 1024 Hann frames every 5 ms, differences of the logarithm of 1 + 5 x the bin's size over 15 ms, summed
+ * where positive; peaks above the running median by a fifth of the 98th percentile, 30 ms x stretch apart.
  */
 export const findOnsets = (sound: Sound, stretch: number): number[] => {
   const x = middleChannel(sound.channels)
