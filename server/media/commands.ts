@@ -10,15 +10,27 @@ export type Sound = { sampleRate: number; channels: 1 | 2 }
 /** Leaves out pictures, other streams, tags and chapters: nothing of the sender's metadata reaches a listener. */
 const soundOnly = ['-map_metadata', '-1', '-map_chapters', '-1', '-vn', '-sn', '-dn', '-fflags', '+bitexact']
 
-/** Decodes the first audio stream once, at its own rate, never longer than `maxSec`. */
-export const decodeCommand = ({ sampleRate, channels }: Sound, maxSec: number): FfmpegCommand =>
-  fromSource(['-t', String(maxSec)])
-    .outputOptions(['-map', '0:a:0', ...soundOnly])
+/** Half-open range of frames. */
+export type FrameRange = { from: number; to: number }
+
+/**
+ * Decodes the first audio stream once, at its own rate, never longer than `maxSec`. `only` leaves out all but those frames:
+ * counted from the very first one, because jumping into a compressed file lands where its packets begin.
+ */
+export const decodeCommand = (
+  { sampleRate, channels }: Sound,
+  maxSec: number,
+  { output = 'pipe:1', only }: { output?: string; only?: FrameRange } = {}
+): FfmpegCommand => {
+  const command = fromSource(['-t', String(maxSec)]).outputOptions(['-map', '0:a:0', ...soundOnly])
+  if (only) command.audioFilters(`atrim=start_sample=${only.from}:end_sample=${only.to}`)
+  return command
     .audioFrequency(sampleRate)
     .audioChannels(channels)
     .audioCodec('pcm_f32le')
     .format('f32le')
-    .output('pipe:1')
+    .output(output)
+}
 
 export const renditionFile = 'rendition.m4a'
 export const renditionMime = 'audio/mp4'

@@ -1,14 +1,13 @@
 // Turns a recording into what the desk plays and draws: rendition, pieces, loudness, peaks. The file is decoded once.
-import { once } from 'node:events'
 import { mkdir, readFile, rm, stat, writeFile } from 'node:fs/promises'
 import { basename, dirname, join } from 'node:path'
-import type { Writable } from 'node:stream'
 import type { PieceManifest } from '@shared/audio/piece-manifest.ts'
 import type { PeakLevel } from '@shared/audio/peaks.ts'
 import { err, ok, type Result } from '@shared/result.ts'
 import { decodeCommand, piecesCommand, renditionCommand, renditionFile, renditionMime, type Sound } from './commands.ts'
 import { mediaFault, storageError, type MediaFault } from './faults.ts'
 import { sourceName, startFfmpeg, type Exit, type MediaProcess, type ProcessLimits } from './ffmpeg.ts'
+import { createFrameReader, feed } from './frames.ts'
 import { defaultMediaLimits, silenceThreshold, type MediaLimits } from './limits.ts'
 import { readLoudness, type Loudness } from './loudness.ts'
 import { createPeaksWriter } from './peaks-writer.ts'
@@ -54,40 +53,6 @@ export const readIngestResult = async (outDir: string): Promise<IngestResult | u
 const processLimits = ({ probe, bounds }: Job, outputBytes: number): ProcessLimits => {
   const sec = probe.durationFrom === 'header' ? probe.durationSec * 1.1 : bounds.maxDurationSec
   return { cpuSec: 60 + sec * 0.3, wallSec: 120 + sec * 2, memoryBytes: bounds.memoryBytes, outputBytes }
-}
-
-/** Writes and waits while the pipe is full; a process that has ended lets go of the wait. */
-const feed = async (input: Writable, chunk: Buffer): Promise<void> => {
-  if (input.destroyed || input.write(chunk)) return
-  const over = new AbortController()
-  const wait = (event: string) => once(input, event, { signal: over.signal }).catch(() => undefined)
-  await Promise.race([wait('drain'), wait('close')])
-  over.abort()
-}
-
-/** +24 dB of full scale: beyond it a damaged file speaks, and encoders refuse what is near infinity. */
-const loudestSample = 16
-
-/** Bytes from a pipe as whole frames of sound floats; what is left over waits for the next chunk. */
-const createFrameReader = (channels: number) => {
-  const frameBytes = channels * 4
-  let rest: Buffer = Buffer.alloc(0)
-  return (chunk: Buffer): Float32Array => {
-    const joined = rest.length === 0 ? chunk : Buffer.concat([rest, chunk])
-    const whole = joined.length - (joined.length % frameBytes)
-    rest = joined.subarray(whole)
-    const samples =
-      joined.byteOffset % 4 === 0
-        ? new Float32Array(joined.buffer, joined.byteOffset, whole / 4)
-        : new Float32Array(Uint8Array.from(joined.subarray(0, whole)).buffer)
-    for (let at = 0; at < samples.length; at++) {
-      const sample = samples[at] ?? 0
-      if (!(sample <= loudestSample && sample >= -loudestSample)) {
-        samples[at] = Number.isNaN(sample) ? 0 : Math.sign(sample) * loudestSample
-      }
-    }
-    return samples
-  }
 }
 
 type Peaks = Awaited<ReturnType<typeof createPeaksWriter>>

@@ -19,6 +19,8 @@ export type Probe = {
   /** Whether the length is the file's own statement, or was counted packet by packet. */
   durationFrom: 'header' | 'packets'
   bitRate?: number
+  /** Bits that hold what the file holds: 24 for recordings without loss that are wider than 16, else 16. */
+  depth: 16 | 24
 }
 
 export type ProbeOptions = { signal?: AbortSignal | undefined; limits?: Partial<MediaLimits> | undefined }
@@ -49,6 +51,7 @@ const Answer = z.object({
     z.object({
       codec_type: z.string().optional(),
       codec_name: z.string().optional(),
+      sample_fmt: z.string().optional(),
       sample_rate: z.coerce.number().optional(),
       channels: z.number().optional(),
       duration: z.coerce.number().optional(),
@@ -60,7 +63,7 @@ type Answer = z.infer<typeof Answer>
 
 const shown = [
   'format=format_name,duration,probe_score,bit_rate',
-  'stream=codec_type,codec_name,sample_rate,channels,duration',
+  'stream=codec_type,codec_name,sample_fmt,sample_rate,channels,duration',
   'stream_disposition=attached_pic'
 ].join(':')
 
@@ -133,8 +136,11 @@ const soundOf = (answer: Answer): Result<Sound, MediaFaultCode> => {
   if (sampleRate < 1 || channels < 1) return err('not-audio')
   const bitRate = answer.format.bit_rate
   const headerSec = answer.format.duration ?? stream.duration ?? 0
-  return ok({ container, codec, sampleRate, channels, headerSec, ...(bitRate === undefined ? {} : { bitRate }) })
+  const depth = isLossless(codec) && !/^(u8|s16)p?$/.test(stream.sample_fmt ?? '') ? 24 : 16
+  return ok({ container, codec, sampleRate, channels, depth, headerSec, ...(bitRate === undefined ? {} : { bitRate }) })
 }
+
+const isLossless = (codec: string): boolean => /^(pcm_[suf]\d+(le|be)?|flac|alac)$/.test(codec)
 
 /** Codecs that ffprobe may name; what our own ffmpeg is allowed to decode is a closed list beside it. */
 const isReadable = (codec: string): boolean =>

@@ -21,6 +21,7 @@ export const postgresFolders = () => {
 const needs = {
   database: { package: 'postgresql', isThere: () => postgresFolders().length > 0 },
   audio: { package: 'ffmpeg', isThere: () => isProgram('ffmpeg') && isProgram('ffprobe') },
+  measures: { package: 'aubio-tools', isThere: () => isProgram('aubiopitch') && isProgram('aubioonset') },
   browser: { package: 'chromium', isThere: () => isProgram('chromium') }
 }
 
@@ -44,7 +45,7 @@ const withoutMainCluster = async (install) => {
 
 /**
  * Installs what is missing as root, else says the one command that does.
- * @param {('database' | 'audio' | 'browser')[]} names
+ * @param {('database' | 'audio' | 'measures' | 'browser')[]} names
  */
 export const ensurePrograms = async (names) => {
   const missing = () => names.map((name) => needs[name]).filter((need) => need && !need.isThere())

@@ -75,7 +75,12 @@ const main = async () => {
   await ensurePackages()
   const wanted = projects()
   const has = (/** @type {string[]} */ ...names) => !wanted || names.some((name) => wanted.includes(name))
-  await ensurePrograms(has('e2e', 'client') ? ['database', 'audio', 'browser'] : ['database', 'audio'])
+  await ensurePrograms([
+    'database',
+    'audio',
+    ...(has('media') ? /** @type {const} */ (['measures']) : []),
+    ...(has('e2e', 'client') ? /** @type {const} */ (['browser']) : [])
+  ])
   const checked = wanted ? { passed: 0, failed: 0, skipped: 0 } : await runChecks()
   const room = await openTestRoom({ database: has('api', 'realtime', 'media', 'e2e'), build: has('e2e') })
   const tested = await runTests(room).finally(async () => {
