@@ -70,6 +70,7 @@ import { createGroupEventService } from '@server/services/group-events.service'
 import { createGroupService } from '@server/services/groups.service'
 import { createInvitationService } from '@server/services/invitations.service'
 import { createLinkService } from '@server/services/links.service'
+import { createPlayedOverService } from '@server/services/played-over'
 import { createPreferenceService } from '@server/services/preferences.service'
 import { createRecordingService } from '@server/services/recordings.service'
 import { createSavedLoopService } from '@server/services/saved-loops.service'
@@ -106,7 +107,8 @@ export const buildApp = async ({ config, log, now, limitScale = 1, bounds: given
   const audit = createAuditRepo(db)
 
   const relations = createRelations(accessRepo)
-  const documents = createDocumentService({ db, documents: createDocumentsRepo(db), events })
+  const documentsRepo = createDocumentsRepo(db)
+  const documents = createDocumentService({ db, documents: documentsRepo, events })
   const groups = createGroupService({ db, groups: groupsRepo, events, audit })
   const invitations = createInvitationService({
     db,
@@ -130,6 +132,7 @@ export const buildApp = async ({ config, log, now, limitScale = 1, bounds: given
     audit,
     storage,
     queue,
+    playedOver: createPlayedOverService({ takes: takesRepo, documents: documentsRepo, edits: documents }),
     bounds
   })
   const recordings = createRecordingService({ db, recordings: createRecordingsRepo(db), takes, storage, bounds })

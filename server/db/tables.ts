@@ -96,6 +96,8 @@ export interface TakeRow {
   group_id: string
   tune_id: string | null
   uploader_id: string
+  /** The take it was played over. */
+  over_take_id: string | null
   title: string
   reach: Reach
   agreed_at: Date

@@ -43,6 +43,7 @@ export const createTakesRepo = (db: Db) => {
         'takes.group_id',
         'takes.tune_id',
         'takes.uploader_id',
+        'takes.over_take_id',
         'takes.title',
         'takes.reach',
         'takes.state',
@@ -65,6 +66,7 @@ export const createTakesRepo = (db: Db) => {
     id: row.id,
     groupId: row.group_id,
     tuneId: row.tune_id,
+    overTakeId: row.over_take_id,
     title: row.title,
     uploader: person(row.uploader_id, row.uploader_name),
     reach: row.reach,
@@ -172,6 +174,7 @@ export const createTakesRepo = (db: Db) => {
         groupId: string
         tuneId: string | null
         uploaderId: string
+        overTakeId: string | null
         title: string
         reach: Reach
         bytes: number
@@ -184,6 +187,7 @@ export const createTakesRepo = (db: Db) => {
         group_id: row.groupId,
         tune_id: row.tuneId,
         uploader_id: row.uploaderId,
+        over_take_id: row.overTakeId,
         title: row.title,
         reach: row.reach,
         agreed_at: trx.fn.now(),

@@ -1,11 +1,13 @@
 import type { recordingRoutes, takeRoutes } from '@shared/contracts/takes'
+import { readPlayedOver } from '@server/services/played-over'
 import type { Handlers } from '@server/http/handlers'
 import type { RecordingService } from '@server/services/recordings.service'
 import type { TakeService } from '@server/services/takes.service'
 
 export const takeHandlers = (takes: TakeService): Handlers<typeof takeRoutes> => ({
   list: ({ actor, relations, params, query }) => takes.list(actor, relations, params.groupId, query),
-  upload: ({ actor, params, body, file }) => takes.create(actor, params.groupId, body, file),
+  upload: ({ actor, params, body: { over, ...said }, file }) =>
+    takes.create(actor, params.groupId, { ...said, over: readPlayedOver(over) }, file),
   get: ({ relations, params }) => takes.get(relations, params.takeId),
   update: ({ actor, relations, params, body }) => takes.update(actor, relations, params.takeId, body),
   remove: async ({ actor, params, asker }) => {

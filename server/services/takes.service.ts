@@ -2,7 +2,7 @@ import { z } from 'zod'
 import { abilitiesOn } from '@shared/access/permissions'
 import type { Relation } from '@shared/access/relations'
 import { Instant, Uuid } from '@shared/contracts/common'
-import type { PiecesManifest, Reach, Take, TakeCard } from '@shared/contracts/takes'
+import type { PiecesManifest, PlayedOver, Reach, Take, TakeCard } from '@shared/contracts/takes'
 import { takeRoutes } from '@shared/contracts/takes'
 import { addressOf } from '@shared/contracts/route'
 import { problem } from '@shared/errors/problems'
@@ -21,6 +21,7 @@ import type { GroupsRepo } from '@server/repositories/groups.repo'
 import type { StoredTake, TakeCursor, TakesRepo } from '@server/repositories/takes.repo'
 import type { TunesRepo } from '@server/repositories/tunes.repo'
 import type { DocumentPlace } from '@server/services/documents.service'
+import type { PlayedOverService } from '@server/services/played-over'
 import { stillAllowed } from '@server/services/still-allowed'
 
 interface Deps {
@@ -33,6 +34,7 @@ interface Deps {
   audit: AuditRepo
   storage: MediaStorage
   queue: Pick<JobQueue, 'ingest'>
+  playedOver: PlayedOverService
   bounds: Pick<Bounds, 'takesPerMember' | 'bytesPerMember'>
 }
 type Held = ReadonlySet<Relation>
@@ -42,6 +44,8 @@ export interface NewTake {
   title: string
   tuneId?: string | undefined
   reach: Reach
+  /** It was played over another take of the group: its bars are laid by that one's. */
+  over?: PlayedOver | undefined
 }
 
 const pageSize = 50
@@ -77,7 +81,7 @@ const withAbilities = (take: StoredTake, held: Held): Take => {
 }
 
 export const createTakeService = (deps: Deps) => {
-  const { db, takes, tunes, access, groups, events, audit, storage, queue, bounds } = deps
+  const { db, takes, tunes, access, groups, events, audit, storage, queue, playedOver, bounds } = deps
 
   const get = async (held: Held, takeId: string): Promise<Take> => {
     const take = await takes.find(takeId)
@@ -135,6 +139,7 @@ export const createTakeService = (deps: Deps) => {
 
     /** From a file that is already on disk: probed before anything is kept, so that a wrong file leaves nothing behind. */
     create: async (actor: Actor, groupId: string, input: NewTake, file: UploadedFile): Promise<Take> => {
+      const { over, ...said } = input
       const before = await takes.find(input.id)
       if (before) {
         if (before.groupId !== groupId || before.uploader.id !== actor.id) throw problem('already-there')
@@ -159,10 +164,12 @@ export const createTakeService = (deps: Deps) => {
               detail: 'Your takes in this group have used up their room. Delete some first.'
             })
           }
+          if (over) await playedOver.check(actor, over, groupId, trx)
           await takes.insert(
             {
-              ...input,
-              tuneId: input.tuneId ?? null,
+              ...said,
+              tuneId: said.tuneId ?? null,
+              overTakeId: over?.takeId ?? null,
               groupId,
               uploaderId: actor.id,
               bytes: file.bytes,
@@ -174,6 +181,8 @@ export const createTakeService = (deps: Deps) => {
             { groupId, type: 'take:created', objectId: input.id, takeId: input.id, actorId: actor.id },
             trx
           )
+          if (over)
+            await playedOver.layBars(actor, { id: input.id, groupId, durationSec: probed.value.durationSec }, over, trx)
           await queue.ingest(input.id, trx)
         })
       } catch (error) {

@@ -11,6 +11,8 @@ export const Take = z.object({
   id: Uuid,
   groupId: Uuid,
   tuneId: Uuid.nullable(),
+  /** The take it was played over; the asker may not be among those who hear that one. */
+  overTakeId: Uuid.nullable(),
   title: z.string(),
   uploader: Person,
   reach: Reach,
@@ -57,6 +59,16 @@ export const UploadFields = z.object({
   agreed: z.literal('yes', 'Confirm that everyone on it has agreed.')
 })
 
+/** How a recording lies along the take it was played over. */
+export const PlayedOver = z.strictObject({
+  takeId: Uuid,
+  /** Second of that take at this one's second 0; below 0 when it begins before it. */
+  placeSec: z.number().min(-60).max(limits.takeSec),
+  /** Seconds of that take in one of this: 0.7 when it was played at 70 %. */
+  rate: z.number().min(0.1).max(2)
+})
+export type PlayedOver = z.infer<typeof PlayedOver>
+
 export const PiecesManifest = z.object({
   sampleRate: z.number().int(),
   channels: z.number().int(),
@@ -96,7 +108,8 @@ export const takeRoutes = {
     fileField: 'recording',
     maxBytes: limits.uploadBytes,
     params: GroupParams,
-    body: UploadFields,
+    /** `over` is a PlayedOver, as JSON. */
+    body: UploadFields.extend({ over: z.string().max(300).optional() }),
     status: 201,
     response: Take
   }),

@@ -64,9 +64,9 @@ export const passesIn = (heard: readonly HeardPlace[], bounds: PassBounds): Hear
   const runs: HeardPlace[][] = []
   let run: HeardPlace[] = []
   for (const reading of heard) {
-    const [first, last] = [run[0], run.at(-1)]
+    const last = run.at(-1)
     if (last && reading.clockSec <= last.clockSec) continue
-    if (first && last && !goesOn(first, last, reading)) {
+    if (last && !goesOn(run.at(-2), last, reading)) {
       runs.push(run)
       // What came last may be the first of the next run, if it was not part of this one.
       run = run.length === 1 ? [] : isMoving(last, reading) && run.length === 2 ? [last] : []
@@ -107,10 +107,10 @@ export const middleOf = (values: readonly number[]): number => {
 const isMoving = (from: HeardPlace, to: HeardPlace): boolean =>
   (to.placeSec - from.placeSec) / (to.clockSec - from.clockSec) >= LEAST_RATE
 
-const goesOn = (first: HeardPlace, last: HeardPlace, next: HeardPlace): boolean => {
+const goesOn = (before: HeardPlace | undefined, last: HeardPlace, next: HeardPlace): boolean => {
   if (!isMoving(last, next)) return false
-  if (first === last) return true
-  const rate = (last.placeSec - first.placeSec) / (last.clockSec - first.clockSec)
+  if (!before) return true
+  const rate = (last.placeSec - before.placeSec) / (last.clockSec - before.clockSec)
   return Math.abs(last.placeSec + (next.clockSec - last.clockSec) * rate - next.placeSec) < ON_LINE_SEC
 }
 

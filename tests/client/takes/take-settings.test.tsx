@@ -29,6 +29,7 @@ const take: Take = {
   gainDb: 0,
   commentCount: 0,
   openCount: 0,
+  overTakeId: null,
   abilities: ['take:read', 'take:hear', 'take:edit', 'take:delete']
 }
 const person = (n: number, name: string) => ({
