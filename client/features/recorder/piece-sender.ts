@@ -3,7 +3,7 @@ import { addressOf } from '@shared/contracts/route'
 import { recordingRoutes } from '@shared/contracts/takes'
 import { ApiProblem, callRoute, offlineProblem, parseAnswer, problemOf } from '@client/lib/api'
 import { createScope } from '@client/lib/scope'
-import type { Begun, PieceStore } from './piece-store'
+import type { Begun, RecordingStore } from './piece-store'
 
 /** The server's side of a recording; a stand-in in tests. */
 export interface RecordingServer {
@@ -60,7 +60,7 @@ const passing = new Set<ApiProblem['code']>(['offline', 'unavailable', 'too-many
 
 interface Deps {
   begun: Pick<Begun, 'id' | 'mime' | 'pieces'> & { groupId: string }
-  store: Pick<PieceStore, 'piece' | 'removePiece'>
+  store: Pick<RecordingStore, 'piece' | 'removePiece'>
   server?: RecordingServer
 }
 

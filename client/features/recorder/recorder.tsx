@@ -2,17 +2,17 @@ import { useEffect, useState, useSyncExternalStore, type ReactNode } from 'react
 import type { Take } from '@shared/contracts/takes'
 import { timeWords } from '@shared/timing/time-words'
 import { useScope } from '@client/lib/scope'
+import { InputWords } from '@client/transport/microphone/input-words'
+import { LevelBar } from '@client/transport/microphone/level-bar'
+import { missingForRecording } from '@client/transport/microphone/microphone'
+import { useMicrophone } from '@client/transport/microphone/use-microphone'
 import { Button } from '@client/ui/button'
 import { Notice } from '@client/ui/notice'
-import { Select } from '@client/ui/select'
 import { Sheet } from '@client/ui/sheet'
 import { useFinish, useThrowAway, type KeepWords } from './finish'
-import { LevelBar } from './level-bar'
 import { ListenBack } from './listen-back'
-import { missingForRecording } from './microphone'
 import type { SenderView } from './piece-sender'
 import { startRecording, type Recording } from './recording'
-import { useMicrophone, type Microphone } from './use-microphone'
 
 export interface KeepSlot {
   isBusy: boolean
@@ -90,29 +90,6 @@ function AtTheMicrophone(props: RecorderProps) {
         )}
       </div>
     </Sheet>
-  )
-}
-
-function InputWords({ microphone }: { microphone: Microphone }) {
-  const { inputs, inputId, obeyed } = microphone
-  return (
-    <>
-      {inputs.length > 1 ? (
-        <Select
-          label="Input"
-          value={inputId}
-          choices={inputs.map(({ id, name }) => ({ value: id, label: name }))}
-          onChange={microphone.open}
-        />
-      ) : (
-        <p className="text-sm text-pencil">Input: {inputs[0]?.name ?? 'the one the browser chose'}</p>
-      )}
-      {obeyed && !obeyed.hasObeyed ? (
-        <Notice>{obeyed.words}</Notice>
-      ) : (
-        <p className="text-sm text-pencil">{obeyed?.words}</p>
-      )}
-    </>
   )
 }
 

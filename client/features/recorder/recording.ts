@@ -1,9 +1,10 @@
 // One recording from the first note to the last: MediaRecorder's pieces go into the store, and from there to the server.
 import { freshId } from '@client/lib/ids'
+import { holdRecording } from '@client/lib/piece-store'
 import { createScope } from '@client/lib/scope'
-import { bitsPerSecond, chooseMime } from './microphone'
+import { bitsPerSecond, chooseMime } from './mime'
 import { createPieceSender, type PieceSender, type RecordingServer } from './piece-sender'
-import { type Begun, browserPieceStore, holdRecording, type PieceStore } from './piece-store'
+import { type Begun, browserPieceStore, type RecordingStore } from './piece-store'
 
 export type RecordingState = 'recording' | 'paused' | 'stopping' | 'stopped'
 
@@ -37,7 +38,7 @@ interface Deps {
   stream: MediaStream
   channels: number
   owner: { ownerId: string; groupId: string } | null
-  store?: PieceStore
+  store?: RecordingStore
   server?: RecordingServer
   /** ms since 1970. */
   now?: () => number

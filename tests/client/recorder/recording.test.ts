@@ -1,5 +1,5 @@
 import { afterEach, beforeEach, describe, expect, it, vi } from 'vitest'
-import type { Begun, PieceStore } from '@client/features/recorder/piece-store'
+import type { Begun, RecordingStore } from '@client/features/recorder/piece-store'
 import { startRecording } from '@client/features/recorder/recording'
 import { liveScopes } from '@client/lib/scope'
 import { textOf } from './text-of'
@@ -38,7 +38,7 @@ class FakeRecorder extends EventTarget {
 const memoryStore = () => {
   const begun = new Map<string, Begun>()
   const pieces = new Map<number, Blob>()
-  const store: PieceStore = {
+  const store: RecordingStore = {
     putBegun: async (one) => void begun.set(one.id, one),
     putPiece: async (_id, index, piece) => void pieces.set(index, piece),
     piece: async (_id, index) => pieces.get(index) ?? null,

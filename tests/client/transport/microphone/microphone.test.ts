@@ -1,7 +1,8 @@
 import fc from 'fast-check'
 import { describe, expect, it } from 'vitest'
-import { chooseMime, missingForRecording, obeyedWords } from '@client/features/recorder/microphone'
-import { createLevelMeter, holdMs, peakOf, shareOfPeak, tooLoudMs } from '@client/features/recorder/level'
+import { chooseMime } from '@client/features/recorder/mime'
+import { createLevelMeter, holdMs, peakOf, shareOfPeak, tooLoudMs } from '@client/transport/microphone/level'
+import { missingForRecording, obeyedWords } from '@client/transport/microphone/microphone'
 
 const off = { echoCancellation: false, noiseSuppression: false, autoGainControl: false }
 
