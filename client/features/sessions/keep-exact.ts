@@ -1,13 +1,19 @@
 // Together by appointment: with an engine that acts at a moment of its own clock, everything of the shared transport is
 // asked for at the moment it takes effect. Only what two clocks drift apart is bent, and hardly ever.
 import type { Player } from '@client/transport/player'
+import { totalSemitones } from '@shared/audio/listening'
 import { sessionPosition, type SharedPlayback } from '@shared/timing/session-position'
 import type { Sec } from '@shared/units'
 import { gapSec } from './gap'
 
 /** Farther off is mended by a jump. */
 const jumpBeyondSec = 0.1
-/** Farther off than this, two clocks have drifted; it is bent until it is nearer than the second. */
+/**
+ * At full speed and pitch samples pass as they are: bending the speed would change the sound more, and cost more work,
+ * than leaving out or repeating so little. Seen twice, so that no single reading makes it jump.
+ */
+const plainJumpBeyondSec = 0.02
+/** Stretched anyway, it is bent beyond the first until it is nearer than the second. */
 const bendBeyondSec = 0.015
 const bendUntilSec = 0.004
 /** Of the speed: too little to be heard as another one. */
@@ -38,11 +44,13 @@ export const createKeepExact = ({ player, serverNow, localNow, onBlocked }: Deps
   /** Until then (local ms) nothing is judged. */
   let settledAt = 0
   let isBending = false
+  let wasApart = false
 
+  const isPlain = (): boolean => player.rate === 1 && totalSemitones(player.semitones, player.aids) === 0
   const settleUntil = (serverMs: number, now: number): void => {
     settledAt = localNow() + Math.max(0, serverMs - now) + settleMs
     if (isBending) player.setTrim(1)
-    isBending = false
+    isBending = wasApart = false
   }
   /** The engine's moment for a moment of the server. */
   const clockAt = (serverMs: number, now: number): Sec => player.clock() + (serverMs - now) / 1000
@@ -99,12 +107,14 @@ export const createKeepExact = ({ player, serverNow, localNow, onBlocked }: Deps
       }
       if (player.state !== 'playing' || now < shared.atServerMs) return
       const gap = gapSec(player.heardPosition, wanted.positionSec, shared.loop)
-      if (Math.abs(gap) > jumpBeyondSec) {
+      const isApart = Math.abs(gap) > (isPlain() ? plainJumpBeyondSec : jumpBeyondSec)
+      if (isApart && wasApart) {
         const serverMs = now + noticeMs
         player.seek(sessionPosition(shared, serverMs).positionSec, clockAt(serverMs, now))
         return settleUntil(serverMs, now)
       }
-      isBending = Math.abs(gap) > (isBending ? bendUntilSec : bendBeyondSec)
+      wasApart = isApart
+      isBending = !isPlain() && Math.abs(gap) > (isBending ? bendUntilSec : bendBeyondSec)
       const bend = Math.max(-maxBend, Math.min(maxBend, gap / closeInSec / shared.rate))
       player.setTrim(isBending ? 1 + bend : 1)
     }

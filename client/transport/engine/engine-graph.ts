@@ -31,12 +31,15 @@ export interface GraphEvents {
   onBroken(): void
 }
 
+/** Stretching works in bursts, which a larger buffer takes in; what is told of places allows for its delay. */
+const latencyHint = 'playback'
+
 const makeContext = (): AudioContext => {
   try {
-    return new AudioContext({ latencyHint: 'interactive', sampleRate: engineRate })
+    return new AudioContext({ latencyHint, sampleRate: engineRate })
   } catch {
     // At another rate the worklet matches the streams.
-    return new AudioContext({ latencyHint: 'interactive' })
+    return new AudioContext({ latencyHint })
   }
 }
 
