@@ -1,14 +1,21 @@
 // What components may know of a player: its state as it changes. The position is not state; read it per frame.
 import { useRef, useSyncExternalStore } from 'react'
-import type { Player, PlayerLoop, PlayerState } from './player'
+import type { Aids } from '@shared/audio/listening'
+import type { Player, PlayerCapabilities, PlayerLoop, PlayerState } from './player'
 
 export interface PlayerView {
   state: PlayerState
   rate: number
+  semitones: number
+  aids: Aids
+  /** Another object when another engine has taken over. */
+  capabilities: PlayerCapabilities
   loop: PlayerLoop | null
   /** Passes done since the loop was set. */
   turns: number
 }
+
+const parts = ['state', 'rate', 'semitones', 'aids', 'capabilities', 'loop', 'turns'] as const
 
 export const usePlayer = (player: Player): PlayerView => {
   const turns = useRef(0)
@@ -18,6 +25,8 @@ export const usePlayer = (player: Player): PlayerView => {
       const stops = [
         player.on('state', changed),
         player.on('rate', changed),
+        player.on('pitch', changed),
+        player.on('aids', changed),
         player.on('loop', () => {
           turns.current = 0
           changed()
@@ -30,11 +39,10 @@ export const usePlayer = (player: Player): PlayerView => {
       return () => stops.forEach((stop) => stop())
     },
     () => {
-      const { state, rate, loop } = player
-      const next = { state, rate, loop, turns: turns.current }
+      const { state, rate, semitones, aids, capabilities, loop } = player
+      const next: PlayerView = { state, rate, semitones, aids, capabilities, loop, turns: turns.current }
       const last = shown.current
-      const isSame = last?.state === state && last.rate === rate && last.loop === loop && last.turns === next.turns
-      if (!isSame) shown.current = next
+      if (!last || parts.some((part) => last[part] !== next[part])) shown.current = next
       return shown.current ?? next
     }
   )

@@ -41,21 +41,31 @@ export function Popover({ renderTrigger, children, align = 'start', role = 'dial
         if (document.activeElement === document.body && button.isConnected) button.focus()
       })
       const place = () => {
+        element.style.maxHeight = ''
         const { width, height } = element.getBoundingClientRect()
         const view = { width: innerWidth, height: innerHeight }
-        const at = placeBeside(button.getBoundingClientRect(), { width, height }, view, align)
+        const beside = button.getBoundingClientRect()
+        const at = placeBeside(beside, { width, height }, view, align)
         element.style.left = `${at.left}px`
-        element.style.top = `${at.top}px`
+        // Over a button at the foot of the window it stands on that button: what comes into it later pushes it upwards.
+        const isOnFoot = at.top < beside.top && beside.top > view.height / 2
+        element.style.top = isOnFoot ? 'auto' : `${at.top}px`
+        element.style.bottom = isOnFoot ? `${view.height - beside.top + 4}px` : 'auto'
+        if (isOnFoot) element.style.maxHeight = `${beside.top - 12}px`
       }
       place()
       onOpened?.(element)
       scope.listen(window, 'resize', place)
-      scope.listen(window, 'scroll', place, { capture: true, passive: true })
+      const handleScroll = ({ target }: Event) => {
+        if (!(target instanceof Node && element.contains(target))) place()
+      }
+      scope.listen(window, 'scroll', handleScroll, { capture: true, passive: true })
       scope.listen(document, 'pointerdown', ({ target }) => {
         if (target instanceof Node && !element.contains(target) && !button.contains(target)) close()
       })
       scope.listen(document, 'keydown', (event) => {
-        if (event.key !== 'Escape') return
+        // A box opened from within this one goes first.
+        if (event.key !== 'Escape' || element.querySelector('[popover]')) return
         event.stopPropagation()
         event.preventDefault()
         close()

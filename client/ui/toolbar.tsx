@@ -21,7 +21,9 @@ export function Toolbar({ label, children }: ToolbarProps) {
   useScope((scope) => {
     const element = bar.current
     if (!element) return
-    const controls = () => [...element.querySelectorAll<HTMLElement>(stops)]
+    // What stands in a box that a control opened has its own order.
+    const controls = () =>
+      [...element.querySelectorAll<HTMLElement>(stops)].filter((control) => !control.closest('[popover]'))
 
     const settle = (current?: Element | null) => {
       const all = controls()
@@ -43,7 +45,7 @@ export function Toolbar({ label, children }: ToolbarProps) {
       attributeFilter: ['disabled', 'href']
     })
     scope.listen(element, 'focusin', ({ target }) => {
-      if (target instanceof Element && !ownsArrows(target)) settle(target)
+      if (target instanceof Element && !ownsArrows(target) && !target.closest('[popover]')) settle(target)
     })
     scope.listen(element, 'keydown', (event) => {
       const all = controls()

@@ -10,9 +10,9 @@ import { PutToTune } from '@client/features/takes/put-to-tune'
 import { ReadingState } from '@client/features/takes/reading-state'
 import { TakeSettings } from '@client/features/takes/take-settings'
 import { paths } from '@client/lib/paths'
+import { useNarrow } from '@client/lib/use-narrow'
 import type { TimelineHandle } from '@client/timeline/timeline'
 import type { Player } from '@client/transport/player'
-import { TransportBar } from '@client/transport/transport-bar'
 import { AppShell } from '@client/ui/app-shell'
 import { Button } from '@client/ui/button'
 import { useSay } from '@client/ui/live-log'
@@ -25,13 +25,14 @@ import { ChartPanel } from './chart-panel'
 import { DeskActions, type DeskPanel } from './desk-actions'
 import { DeskLanes } from './desk-lanes'
 import { DeskMargin } from './desk-margin'
+import { againBefore, DeskTransport } from './desk-transport'
 import { PanelBoundary } from './panel-boundary'
 import { PeoplePanel } from './people-panel'
 import type { PlaceAddress } from './place-address'
 import { SelectionLine } from './selection-line'
-import { playOrPause, stepBy, useDeskKeys } from './use-desk-keys'
+import { useDeskKeys } from './use-desk-keys'
+import { useDeskPractice } from './use-desk-practice'
 import { useHearing } from './use-hearing'
-import { useNarrow } from './use-narrow'
 import { deskAddress, usePlaceAddress } from './use-place-address'
 import { useStickyFoot } from './use-sticky-foot'
 import { useTakeMaterial } from './use-take-material'
@@ -55,13 +56,13 @@ export function TakeDesk({ me, take, player, missing, onGone }: TakeDeskProps) {
   const material = useTakeMaterial(take, me)
   const { model, comments, letters, tune, bars } = material
   const [selection, setSelection] = useState<Span | null>(null)
-  const hearing = useHearing(me, take, player, selection)
+  const practice = useDeskPractice(player, model)
+  const hearing = useHearing({ me, take, player, selection, ways: practice.manner.ways })
   const { controls } = hearing
   const [panel, setPanel] = useState<DeskPanel | null>(null)
   const [selectedId, setSelectedId] = useState<string | null>(null)
   const [snap, setSnap] = useState<Snap>('bar')
   const [isFollowing, setFollowing] = useState(true)
-  const [areKeysOff, setKeysOff] = useState(false)
   const [open, setOpen] = useState<'keys' | 'table' | 'tune' | 'settings' | null>(null)
   const [writeCount, setWriteCount] = useState(0)
   const timeline = useRef<TimelineHandle>(null)
@@ -143,14 +144,16 @@ export function TakeDesk({ me, take, player, missing, onGone }: TakeDeskProps) {
     model,
     selection,
     snap,
-    areOff: areKeysOff,
+    practice,
     timeline,
     onSelect: select,
     onFollow: () => setFollowing(!isFollowing),
     onWrite: () => setWriteCount(writeCount + 1),
     onUndo: undo,
     ...(can('take:edit-bars') ? { onRedo: () => void bars.redo() } : {}),
-    onKeySheet: () => setOpen('keys')
+    onAgainBefore: () => againBefore({ player, controls, model }),
+    onKeySheet: () => setOpen('keys'),
+    say
   })
 
   const groupName = me.memberships.find(({ groupId }) => groupId === take.groupId)?.groupName ?? 'Group'
@@ -280,24 +283,23 @@ export function TakeDesk({ me, take, player, missing, onGone }: TakeDeskProps) {
         <div className="min-w-0 border border-rule bg-sheet px-4 lg:min-h-0 lg:pb-4">{margin}</div>
       </div>
       <div ref={foot} className="sticky bottom-0 z-10 flex-none bg-paper px-2 pt-2 pb-2 sm:px-5 sm:pt-3 sm:pb-3">
-        {missing ? <p className="pb-1 text-sm text-pencil">{missing}</p> : null}
         <PanelBoundary name="the transport">
-          <TransportBar
+          <DeskTransport
+            takeId={take.id}
             player={player}
-            commands={{
-              playPause: () => playOrPause({ player, controls }),
-              setRate: controls.setRate,
-              setLoop: controls.setLoop,
-              nudge: (direction) => stepBy({ player, controls, model }, 'bar', direction)
-            }}
+            controls={controls}
+            model={model}
+            practice={practice}
             selection={selection}
-            spanWords={(span) => model.placeOf(span).place}
-            tempoNow={() => model.barMap?.tempoAt(player.heardPosition) ?? null}
-            onVolume={(volume) => player.setVolume(volume)}
-            areKeysOff={areKeysOff}
-            onKeysOff={setKeysOff}
+            isShared={hearing.isShared}
+            missing={missing}
             isKeySheetOpen={open === 'keys'}
             onKeySheet={(isOpen) => setOpen(isOpen ? 'keys' : null)}
+            onKeptLoop={(span) => {
+              selectBars(span)
+              controls.seek(span.startSec)
+              timeline.current?.show(span.startSec)
+            }}
           />
         </PanelBoundary>
       </div>

@@ -1,11 +1,13 @@
 import type { RefObject } from 'react'
+import { nextCountIn, countInWords } from '@client/transport/click-part'
 import type { TransportControls } from '@client/transport/controls'
-import { useTransportKeys } from '@client/transport/keys'
+import { useTransportKeys, type KeyActions } from '@client/transport/keys'
 import { rateLimits, type Player } from '@client/transport/player'
 import type { TimelineHandle } from '@client/timeline/timeline'
 import { nudgeSec, snapSec, type Snap } from '@shared/timing/snap'
 import type { Span } from '@shared/timing/types'
 import type { DeskModel } from './desk-model'
+import type { DeskPractice } from './use-desk-practice'
 
 export interface DeskKeysDeps {
   player: Player
@@ -13,14 +15,17 @@ export interface DeskKeysDeps {
   model: DeskModel
   selection: Span | null
   snap: Snap
-  areOff: boolean
+  practice: DeskPractice
   timeline: RefObject<TimelineHandle | null>
   onSelect: (span: Span | null) => void
   onFollow: () => void
   onWrite: () => void
   onUndo: () => void
   onRedo?: () => void
+  onAgainBefore: () => void
   onKeySheet: () => void
+  /** What a key has set, for those who do not see it. */
+  say: (words: string) => void
 }
 
 /** Moves the line by bars or beats; by tenths of a second where there are none. */
@@ -42,8 +47,10 @@ export const useDeskKeys = (deps: DeskKeysDeps): void => {
       which === 'start' ? [sec, selection?.endSec ?? model.durationSec] : [selection?.startSec ?? 0, sec]
     if (end > start) onSelect({ startSec: start, endSec: end })
   }
+  const { keys } = deps.practice
   useTransportKeys(
     {
+      ...practiceKeys(deps),
       playPause: () => playOrPause(deps),
       backBar: () => stepBy(deps, 'bar', -1),
       onBar: () => stepBy(deps, 'bar', 1),
@@ -64,6 +71,43 @@ export const useDeskKeys = (deps: DeskKeysDeps): void => {
       ...(deps.onRedo ? { redo: deps.onRedo } : {}),
       keySheet: deps.onKeySheet
     },
-    { isOff: deps.areOff }
+    { map: keys.map, isOff: keys.areOff }
   )
+}
+
+/** Keys of what one practises with: those that cannot do anything here are left alone. */
+const practiceKeys = ({ practice, onAgainBefore, say }: DeskKeysDeps): KeyActions => {
+  const { listening, click, tapping } = practice
+  const { aids, semitones, can } = listening
+  const pitch = (steps: number) => () => listening.setSemitones(semitones + steps)
+  return {
+    againBefore: onAgainBefore,
+    tapTempo: tapping.tap,
+    ...(can.pitch ? { pitchUp: pitch(1), pitchDown: pitch(-1) } : {}),
+    ...(can.aids
+      ? {
+          octaveUp: () => {
+            listening.setOctaveUp(!aids.isOctaveUp)
+            say(aids.isOctaveUp ? 'As it sounds.' : 'An octave up.')
+          },
+          lowFocus: () => {
+            listening.setLowFocus(!aids.lowFocus.isOn)
+            say(aids.lowFocus.isOn ? 'Low focus is off.' : 'Low focus is on.')
+          }
+        }
+      : {}),
+    ...(click.canClick && click.meter
+      ? {
+          clickOnOff: () => {
+            click.change({ isOn: !click.settings.isOn })
+            say(click.settings.isOn ? 'The click is off.' : 'The click is on.')
+          },
+          countIn: () => {
+            const next = nextCountIn(click.countIn)
+            click.setCountIn(next)
+            say(next === 'none' ? 'No count-in.' : `It ${countInWords[next]}.`)
+          }
+        }
+      : {})
+  }
 }

@@ -12,7 +12,7 @@ import { useSession, type DeskSession } from '@client/features/sessions/use-sess
 import { freshId } from '@client/lib/ids'
 import { useLatest } from '@client/lib/use-latest'
 import type { LineSource } from '@client/timeline/timeline-types'
-import { soloControls, type TransportControls } from '@client/transport/controls'
+import { soloControls, type LoopWays, type TransportControls } from '@client/transport/controls'
 import type { Player } from '@client/transport/player'
 import { useToast } from '@client/ui/toasts'
 
@@ -24,6 +24,8 @@ export interface Pointed {
 export interface Hearing {
   /** All that the desk does to the sound goes through these. */
   controls: TransportControls
+  /** They are everybody's: place, loop and speed are shared. */
+  isShared: boolean
   /** Plumb lines, when there are more than one's own. */
   lines?: readonly LineSource[]
   /** The name the line hangs from. */
@@ -56,7 +58,16 @@ const useSessionAddress = (): [string | null, (id: string | null) => void] => {
   return [id, change]
 }
 
-export const useHearing = (me: Me, take: Take, player: Player, selection: Span | null): Hearing => {
+export interface HearingDeps {
+  me: Me
+  take: Take
+  player: Player
+  selection: Span | null
+  /** How the loop goes round alone. */
+  ways: LoopWays
+}
+
+export const useHearing = ({ me, take, player, selection, ways }: HearingDeps): Hearing => {
   const toast = useToast()
   const [sessionId, setSessionId] = useSessionAddress()
   const live = useLiveSessions(take.groupId)
@@ -73,9 +84,15 @@ export const useHearing = (me: Me, take: Take, player: Player, selection: Span |
     },
     onRefused: tell
   })
-  const solo = useMemo(() => soloControls(player), [player])
+  const solo = useMemo(() => soloControls(player, ways), [player, ways])
   const lines = useMemo(() => (session?.state.isAway ? linesApart(session, player) : undefined), [session, player])
   const openHere = live.data?.items.find(({ takeId }) => takeId === take.id) ?? null
+
+  const isShared = session?.controls != null
+  useEffect(() => {
+    // What one had set for oneself stays out of what all hear.
+    if (isShared && player.loop) player.setLoop({ span: player.loop.span })
+  }, [isShared, player])
 
   const latest = useLatest(session)
   const isInside = session !== null
@@ -91,6 +108,7 @@ export const useHearing = (me: Me, take: Take, player: Player, selection: Span |
 
   return {
     controls: session?.controls ?? solo,
+    isShared,
     ...(lines ? { lines } : {}),
     ...(session?.leaderName && !session.state.isAway ? { leaderName: firstName(session.leaderName) } : {}),
     header: session ? (

@@ -2,10 +2,17 @@ import { useEffect, useRef, useState, type ReactNode } from 'react'
 import { useScope } from '@client/lib/scope'
 import { useLatest } from '@client/lib/use-latest'
 import { Timeline, type TimelineHandle } from '@client/timeline/timeline'
-import { useTransportKeys } from '@client/transport/keys'
+import { soloControls } from '@client/transport/controls'
+import { defaultKeyMap, useTransportKeys } from '@client/transport/keys'
 import { rateLimits, type Player } from '@client/transport/player'
+import { KeySheet } from '@client/transport/key-sheet'
 import { TransportBar } from '@client/transport/transport-bar'
+import { useAids } from '@client/transport/use-aids'
+import { useLoopManner } from '@client/transport/use-loop-manner'
+import { useTapTempo } from '@client/transport/use-tap-tempo'
 import { Notice } from '@client/ui/notice'
+import { plainAids } from '@shared/audio/listening'
+import { placeBefore } from '@shared/practice/again-from'
 import { nudgeSec } from '@shared/timing/snap'
 import { spokenTime, timeWords } from '@shared/timing/time-words'
 import type { Span } from '@shared/timing/types'
@@ -77,6 +84,12 @@ function Lanes({
   const [areKeysOff, setKeysOff] = useState(false)
   const [isBlocked, setBlocked] = useState(false)
   const [fault, setFault] = useState<string | null>(null)
+  const [volume, setVolume] = useState(player.volume)
+  const [topHz, setTopHz] = useState(plainAids.lowFocus.topHz)
+  const listening = useAids(player, { topHz, onTopHz: setTopHz })
+  const manner = useLoopManner(player, null)
+  const tapping = useTapTempo(noTempo)
+  const controls = soloControls(player, manner.ways)
   const setting = { barMap: null, durationSec }
 
   useScope(
@@ -100,7 +113,7 @@ function Lanes({
     const kept = span && span.endSec > span.startSec ? span : null
     setSelection(kept)
     onSelection(kept)
-    if (player.loop) player.setLoop(kept ? { span: kept } : null)
+    if (player.loop) controls.setLoop(kept)
   }
   const seek = (sec: Sec): void => {
     player.seek(sec)
@@ -108,8 +121,11 @@ function Lanes({
   }
   const step = (size: Sec) => seek(Math.max(0, Math.min(durationSec, player.heardPosition + size)))
   const playPause = () => (player.state === 'playing' ? player.pause() : void player.play())
-  const setLoop = (span: Span | null) => player.setLoop(span ? { span } : null)
-  const setRate = (rate: number) => player.setRate(Math.max(rateLimits.min, Math.min(rateLimits.max, rate)))
+  const againBefore = () => {
+    seek(placeBefore(null, player.heardPosition, 2))
+    if (player.state !== 'playing') void player.play()
+  }
+  const setRate = (rate: number) => controls.setRate(Math.max(rateLimits.min, Math.min(rateLimits.max, rate)))
   const percent = () => Math.round(player.rate * 100)
   const mark = (edge: 'start' | 'end') => {
     const now = player.heardPosition
@@ -128,12 +144,26 @@ function Lanes({
       backBeat: () => seek(nudgeSec(player.heardPosition, 'none', -1, setting)),
       onBeat: () => seek(nudgeSec(player.heardPosition, 'none', 1, setting)),
       toStart: () => seek(player.loop?.span.startSec ?? 0),
-      loop: () => setLoop(player.loop ? null : selection),
+      loop: () => controls.setLoop(player.loop ? null : selection),
       loopStart: () => mark('start'),
       loopEnd: () => mark('end'),
       slower: () => setRate((percent() - 5) / 100),
       faster: () => setRate((percent() + 5) / 100),
       fullSpeed: () => setRate(1),
+      againBefore,
+      tapTempo: tapping.tap,
+      ...(listening.can.pitch
+        ? {
+            pitchUp: () => listening.setSemitones(player.semitones + 1),
+            pitchDown: () => listening.setSemitones(player.semitones - 1)
+          }
+        : {}),
+      ...(listening.can.aids
+        ? {
+            octaveUp: () => listening.setOctaveUp(!player.aids.isOctaveUp),
+            lowFocus: () => listening.setLowFocus(!player.aids.lowFocus.isOn)
+          }
+        : {}),
       zoomIn: () => timeline.current?.zoom(1),
       zoomOut: () => timeline.current?.zoom(-1),
       follow: () => setFollowing(!isFollowing),
@@ -169,17 +199,30 @@ function Lanes({
       <div ref={foot} className="sticky bottom-0 z-10 -mx-3 mt-auto sm:-mx-5">
         <TransportBar
           player={player}
-          commands={{ playPause, setRate, setLoop, nudge: (direction) => step(direction * barlessStepSec) }}
+          commands={{
+            playPause,
+            setRate,
+            setLoop: controls.setLoop,
+            nudge: (direction) => step(direction * barlessStepSec),
+            againBefore
+          }}
           selection={selection}
           spanWords={({ startSec, endSec }) => `${timeWords(startSec)} to ${timeWords(endSec)}`}
           tempoNow={noTempo}
-          onVolume={(volume) => player.setVolume(volume)}
-          areKeysOff={areKeysOff}
-          onKeysOff={setKeysOff}
-          isKeySheetOpen={isKeySheetOpen}
-          onKeySheet={setKeySheetOpen}
+          listening={listening}
+          manner={manner}
+          tapping={tapping}
+          volume={volume}
+          onVolume={(next) => {
+            setVolume(next)
+            player.setVolume(next)
+          }}
+          onKeySheet={() => setKeySheetOpen(true)}
         />
       </div>
+      {isKeySheetOpen ? (
+        <KeySheet map={defaultKeyMap} areOff={areKeysOff} onOff={setKeysOff} onClose={() => setKeySheetOpen(false)} />
+      ) : null}
     </>
   )
 }

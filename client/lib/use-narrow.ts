@@ -1,5 +1,5 @@
 import { useState } from 'react'
-import { useScope } from '@client/lib/scope'
+import { useScope } from './scope'
 
 /** True on screens narrower than so many pixels. */
 export const useNarrow = (px: number): boolean => {

@@ -1,0 +1,37 @@
+// How a take is heard, in words.
+import type { Aids, Channel } from '@shared/audio/listening'
+
+/** "2 semitones up", "1 semitone down", "as played". */
+export const semitoneWords = (semitones: number): string => {
+  if (semitones === 0) return 'as played'
+  const count = Math.abs(semitones)
+  return `${count} ${count === 1 ? 'semitone' : 'semitones'} ${semitones > 0 ? 'up' : 'down'}`
+}
+
+/** "12 cents sharp", "as tuned". */
+export const centWords = (cents: number): string => {
+  if (cents === 0) return 'as tuned'
+  const count = Math.abs(cents)
+  return `${count} ${count === 1 ? 'cent' : 'cents'} ${cents > 0 ? 'sharp' : 'flat'}`
+}
+
+export const channelWords: Record<Channel, string> = {
+  both: 'both sides',
+  left: 'left side',
+  right: 'right side',
+  middle: 'the middle',
+  sides: 'the sides without the middle'
+}
+
+/** All that is not as recorded: "an octave up · low focus to 300 Hz". Null when everything is. */
+export const aidsWords = (aids: Aids, semitones: number): string | null => {
+  const { isOctaveUp, cents, lowFocus, channel } = aids
+  const words = [
+    isOctaveUp ? 'an octave up' : null,
+    semitones === 0 ? null : semitoneWords(semitones),
+    cents === 0 ? null : centWords(cents),
+    lowFocus.isOn ? `low focus to ${Math.round(lowFocus.topHz)} Hz` : null,
+    channel === 'both' ? null : channelWords[channel]
+  ].filter((part) => part !== null)
+  return words.length > 0 ? words.join(' · ') : null
+}
