@@ -56,6 +56,7 @@ export const createPieceWindow = (deps: PieceWindowDeps): PieceWindow => {
   let failures = 0
   let cancelRetry = (): void => undefined
   let isWaiting = false
+  let isTroubled = false
   let isOver = false
 
   const decodedBytes = (index: number): number => (pieces[index]?.frames ?? 0) * channels * 4
@@ -66,6 +67,7 @@ export const createPieceWindow = (deps: PieceWindowDeps): PieceWindow => {
     isWaiting = true
     const delay = retryDelaysMs[Math.min(failures, retryDelaysMs.length - 1)] ?? 1000
     failures += 1
+    isTroubled = true
     deps.onTrouble(true)
     cancelRetry()
     cancelRetry = scope.timeout(tryNow, delay)
@@ -89,7 +91,8 @@ export const createPieceWindow = (deps: PieceWindowDeps): PieceWindow => {
       if (work.disposed) return
       held.add(index)
       deps.put(index, page)
-      if (failures > 0) deps.onTrouble(false)
+      if (isTroubled) deps.onTrouble(false)
+      isTroubled = false
       failures = 0
     } catch (error) {
       if (work.disposed) return

@@ -201,10 +201,11 @@ export const createWorkletEngine = (deps: WorkletEngineDeps): WorkletEngine => {
   }
   const giveUp = (reason: string): void => {
     if (scope.disposed) return
+    // First told, then ended: who takes over asks for the place.
+    onUnfit(reason)
     taking?.dispose()
     graph?.dispose()
     graph = opening = null
-    onUnfit(reason)
   }
   const rebuild = async (): Promise<void> => {
     const broken = graph
