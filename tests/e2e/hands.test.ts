@@ -52,6 +52,12 @@ const watchHands = `
         own.set.call(this, value)
       }
     })
+  }
+  // The engine of our own is told everything through its worklet's port.
+  const post = MessagePort.prototype.postMessage
+  MessagePort.prototype.postMessage = function (message, ...rest) {
+    if (['command', 'volume', 'take'].includes(message?.kind)) window.hands.sound += 1
+    return post.call(this, message, ...rest)
   }`
 const hands = (page: Page) =>
   page.evaluate(() => (window as unknown as { hands: { moves: number; drags: number; sound: number } }).hands)
