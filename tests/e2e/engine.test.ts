@@ -219,8 +219,6 @@ afterAll(async () => {
 beforeEach(async () => {
   isBreaking = false
   page = await browser.newPage()
-  await page.goto(address)
-  await page.evaluate(() => window.player.load({ url: '/tone.m4a', durationSec: 60 }))
 })
 afterEach(() => page.close())
 
@@ -244,6 +242,11 @@ const measuredRate = () =>
   })
 
 describe('the media element engine', () => {
+  beforeEach(async () => {
+    await page.goto(address)
+    await page.evaluate(() => window.player.load({ url: '/tone.m4a', durationSec: 60 }))
+  })
+
   it('waits for a tap when the browser wants one, then plays', async () => {
     const fresh = await browser.newPage()
     await fresh.goto(`${address}/#at-once`)
@@ -367,16 +370,17 @@ describe('the engine of our own', () => {
     expect(await page.evaluate(() => window.turns.length)).toBeGreaterThanOrEqual(199)
   })
 
-  it.each([0.5, 0.8])('keeps the time of a loop at %f of the speed', async (rate) => {
+  it('keeps the time of a loop at another speed', async () => {
+    const rate = 0.7
     await openTake('knocks')
     await page.evaluate((value) => {
       window.player.setRate(value)
       window.player.setLoop({ span: { startSec: 20.1, endSec: 20.4 } })
     }, rate)
     await press()
-    const found = await onsets(6000)
+    const found = await onsets(4500)
     const first = found[0]?.at ?? 0
-    expect(found.length).toBeGreaterThan(7)
+    expect(found.length).toBeGreaterThan(8)
     found.forEach(({ at, place }, n) => {
       expect(Math.abs(at - first - (n * 0.3) / rate)).toBeLessThan(0.001)
       expect(Math.abs(place - 20.25)).toBeLessThan(0.005)
@@ -439,17 +443,22 @@ describe('the engine of our own', () => {
     expect(Math.abs(12 * Math.log2(pitchOf(await record(900)) / toneHz) - 12)).toBeLessThan(0.02)
   })
 
-  it('fetches the piece under the playhead first, plays on from what is there without a line, and comes back', async () => {
+  it('plays what is there without a line, waits where nothing is, and goes on by itself when the line is back', async () => {
     await openTake('tone')
-    await page.evaluate(() => window.player.seek(35))
-    await page.waitForFunction(() => window.player.heardPosition === 35)
-    await press()
-    expect(fetched.indexOf('00003.ogg')).toBeLessThanOrEqual(1)
+    await page.waitForFunction(
+      () => performance.getEntriesByName(`${location.origin}/pieces/tone/00002.ogg`).length > 0
+    )
     isBreaking = true
-    await page.evaluate(() => window.player.seek(36))
-    await page.waitForFunction(() => window.player.state === 'playing' && window.player.heardPosition > 36.5)
-    // Nothing of the beginning is kept beyond what loading fetched; far from it the line is needed.
+    await press()
+    await page.waitForFunction(() => window.player.heardPosition > 1)
+    await page.evaluate(() => window.player.seek(52))
+    await page.waitForFunction(() => window.player.state === 'loading' && window.events.includes('fault'))
+    expect(await page.evaluate(() => window.player.heardPosition)).toBeCloseTo(52, 3)
     isBreaking = false
+    fetched = []
+    await page.waitForFunction(() => window.player.state === 'playing' && window.player.heardPosition > 52.5)
+    // The piece under the playhead comes before all others.
+    expect(fetched[0]).toBe('00005.ogg')
   })
 
   it('falls back to the element where there are no pieces, and says what is missing', async () => {
