@@ -58,7 +58,8 @@ const LATE_SEC = 3
 
 /**
  * The straight runs in a list of readings, rising by clock. Counting in, rests and jumps lie between them. A run needs three
- * readings. With `bounds` each one reaches back to where the passes begin and, if another follows, on to where they end.
+ * readings. With `bounds` each one reaches back to where the passes begin and, if another follows, on to where they end; none
+ * reaches beyond.
  */
 export const passesIn = (heard: readonly HeardPlace[], bounds: PassBounds): HeardPass[] => {
   const runs: HeardPlace[][] = []
@@ -130,8 +131,10 @@ const reach = (pass: HeardPass, { startSec, endSec }: PassBounds, isFollowed: bo
   const before = (pass.placeSec - startSec) / pass.rate
   const begins =
     before > 0 && before <= LATE_SEC ? { startClockSec: pass.startClockSec - before, placeSec: startSec } : {}
-  if (!isFollowed || endSec === null) return { ...pass, ...begins }
+  if (endSec === null) return { ...pass, ...begins }
   const endClockSec = pass.startClockSec + (endSec - pass.placeSec) / pass.rate
   const isLate = endClockSec - pass.endClockSec
-  return { ...pass, ...begins, ...(isLate > 0 && isLate <= LATE_SEC ? { endClockSec } : {}) }
+  // Followed by another it went on to the end, though nobody looked; the last one may have gone on past it.
+  const ends = isFollowed ? isLate > 0 && isLate <= LATE_SEC : isLate < 0
+  return { ...pass, ...begins, ...(ends ? { endClockSec } : {}) }
 }

@@ -6,8 +6,8 @@ import { amplitudeOf, createRamp } from './ramp.ts'
 
 /** Loudness gain moves so slowly that another take's never sounds like a knock. */
 const GAIN_SEC = 0.05
-/** Wider than any take brought to the moderate level needs. */
-const GAIN_DB = { min: -40, max: 18 }
+/** Wider than any take brought to the moderate level needs; the least is silence, for a click alone. */
+const GAIN_DB = { min: -120, max: 18 }
 
 export interface AidsChain {
   /** Samples pass untouched, bit for bit. */

@@ -85,6 +85,12 @@ describe('passesIn', () => {
     )
   })
 
+  it('ends a pass where the passage ends, though the take played on', () => {
+    const heard = Array.from({ length: 60 }, (_, i) => ({ clockSec: i / 10, placeSec: 30 + i / 20 }))
+    const [pass] = passesIn(heard, { startSec: 30, endSec: 32 })
+    expect(pass?.endClockSec).toBeCloseTo(4, 9)
+  })
+
   it('finds nothing while the take stands', () => {
     const standing = Array.from({ length: 20 }, (_, i) => ({ clockSec: i / 10, placeSec: 4 }))
     expect(passesIn(standing, { startSec: 4, endSec: null })).toEqual([])
