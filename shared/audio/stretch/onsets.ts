@@ -6,16 +6,18 @@ import { realFft } from '@shared/audio/stretch/fft'
 import type { SampleSource } from '@shared/audio/stretch/types'
 
 export interface Onset {
-  /** First frame of the attack, a moment early: here a new sound may begin. */
+  /** First frame of the attack, a moment early: here a new sound may begin. Of an end, its last frame, a moment late. */
   cut: number
   /** Where the ear puts the note: half way up the attack. */
   anchor: number
-  /** Sum of the bands' rises, octaves of energy. */
+  /** Sum of the bands' rises (of an end, their falls), octaves of energy. */
   strength: number
+  /** A sound breaks off here and none begins. */
+  isEnd: boolean
 }
 
 export interface OnsetFinder {
-  /** Onsets whose cut lies in the half-open span, rising; null while the source has not got the frames. */
+  /** Onsets and ends whose cut lies in the half-open span, rising; null while the source has not got the frames. */
   between(from: number, to: number): readonly Onset[] | null
   /** Frames beyond an onset that finding it looks at. */
   readonly reach: number
@@ -30,6 +32,10 @@ const meanSec = 0.064
 const riseCap = 4
 /** Sum of rises from which on it is an onset. */
 const threshold = 3
+/** Sum of falls from which on a sound has broken off: far more than strings die away in that time. */
+const endThreshold = 12
+/** An end counts this long after an onset and before the next. */
+const endApartSec = 0.06
 /** Two onsets are at least this far apart. */
 const apartSec = 0.03
 const chunkFrames = 64
@@ -54,8 +60,8 @@ export const createOnsetFinder = (source: SampleSource): OnsetFinder => {
   const apart = Math.max(2, Math.round((apartSec * sampleRate) / hop))
 
   const energies = new Map<number, Float64Array>()
-  const rises = new Map<number, number>()
-  const refined = new Map<number, Onset>()
+  const rises = new Map<number, { rise: number; fall: number }>()
+  const refined = new Map<string, Onset[]>()
 
   /** Band energies of a chunk of frames; frame j is centred on sample j * hop. */
   const chunk = (index: number): Float64Array | null => {
@@ -87,7 +93,7 @@ export const createOnsetFinder = (source: SampleSource): OnsetFinder => {
     return made
   }
 
-  const riseAt = (j: number): number | null => {
+  const changeAt = (j: number): { rise: number; fall: number } | null => {
     const known = rises.get(j)
     if (known !== undefined) return known
     let loudest = 0
@@ -96,7 +102,8 @@ export const createOnsetFinder = (source: SampleSource): OnsetFinder => {
       if (!at) return null
       loudest = Math.max(loudest, at[(((i % chunkFrames) + chunkFrames) % chunkFrames) * (bandCount + 1) + bandCount]!)
     }
-    let sum = 0
+    let up = 0
+    let down = 0
     for (let b = 0; b < bandCount; b++) {
       let before = 0
       let after = 0
@@ -110,23 +117,42 @@ export const createOnsetFinder = (source: SampleSource): OnsetFinder => {
       }
       const floor = loudest * floorRatio + 1e-9
       const rise = Math.log2((after / meanSum + floor) / (before / meanSum + floor))
-      if (rise > 0.5) sum += weights[b]! * (Math.min(riseCap, rise) + rise * 1e-3)
+      if (rise > 0.5) up += weights[b]! * (Math.min(riseCap, rise) + rise * 1e-3)
+      if (rise < -0.5) down += weights[b]! * (Math.min(riseCap, -rise) - rise * 1e-3)
     }
-    rises.set(j, sum)
-    return sum
+    const change = { rise: up, fall: down }
+    rises.set(j, change)
+    return change
   }
 
   // The place: a fine envelope of the sharpened signal around the coarse peak.
   const grain = Math.max(8, Math.round(sampleRate * 0.0005))
-  const leadGrains = 120
+  const leadGrains = 320
   const tailGrains = 130
   const fine = new Float64Array(leadGrains + tailGrains)
   const fineRaw = Array.from({ length: channels }, () => new Float32Array((leadGrains + tailGrains) * grain + 1))
 
-  const refine = (j: number, strength: number): Onset | null => {
-    const known = refined.get(j)
+  /** A sound that has broken off shortly before an attack, in the fine envelope: too near for the means to show it. */
+  const endBefore = (attack: number, start: number, strength: number): Onset[] => {
+    let quiet = 0
+    for (let g = attack - 48; g < attack; g++) quiet = Math.max(quiet, fine[g]!)
+    let loud = 0
+    for (let g = Math.max(0, attack - 260); g < attack - 110; g++) loud = Math.max(loud, fine[g]!)
+    if (loud < 10 * quiet || loud <= 0) return []
+    let last = attack - 49
+    while (last > 0 && fine[last]! < 1.5 * quiet + 0.002 * loud) last--
+    let middle = last
+    while (middle > 0 && fine[middle]! < 0.3 * loud) middle--
+    if (last < attack - 200 || middle <= 0) return []
+    return [{ cut: start + (last + 2) * grain, anchor: start + middle * grain, strength, isEnd: true }]
+  }
+
+  /** Of an end the same is done on the sound turned round. */
+  const refine = (j: number, strength: number, isEnd: boolean): Onset[] | null => {
+    const key = `${j}${isEnd ? 'e' : ''}`
+    const known = refined.get(key)
     if (known) return known
-    const start = j * hop - leadGrains * grain
+    const start = j * hop - (isEnd ? fine.length - leadGrains : leadGrains) * grain
     if (!source.read(start - 1, fineRaw)) return null
     fine.fill(0)
     for (const data of fineRaw) {
@@ -140,6 +166,7 @@ export const createOnsetFinder = (source: SampleSource): OnsetFinder => {
         fine[g] = fine[g]! + sum
       }
     }
+    if (isEnd) fine.reverse()
     // Two grains together, so that one zero crossing is no silence.
     for (let g = fine.length - 1; g > 0; g--) fine[g] = Math.max(fine[g]!, fine[g - 1]!)
     // The rise is where the next moments stand highest over the loudest of the period before. The coarse place is early when
@@ -148,7 +175,8 @@ export const createOnsetFinder = (source: SampleSource): OnsetFinder => {
     let calm = 0
     let peak = 0
     let best = -Infinity
-    const loudest = fine.reduce((most, one) => Math.max(most, one), 0)
+    let loudest = 0
+    for (let g = leadGrains - 120; g < fine.length; g++) loudest = Math.max(loudest, fine[g]!)
     for (let g = leadGrains - 60; g < leadGrains + 100; g++) {
       let before = 0
       for (let i = g - 60; i < g - 2; i++) before = Math.max(before, fine[i]!)
@@ -168,9 +196,11 @@ export const createOnsetFinder = (source: SampleSource): OnsetFinder => {
     while (first < end && fine[first]! < low) first++
     let middle = first
     while (middle < end && fine[middle]! < calm + 0.35 * (peak - calm)) middle++
-    const onset = { cut: start + (first - 2) * grain, anchor: start + middle * grain, strength }
-    refined.set(j, onset)
-    return onset
+    const at = (g: number) => start + (isEnd ? fine.length - g : g) * grain
+    const onset = { cut: at(first - 2), anchor: at(middle), strength, isEnd }
+    const both = isEnd ? [onset] : [...endBefore(first - 2, start, strength), onset]
+    refined.set(key, both)
+    return both
   }
 
   return {
@@ -182,23 +212,36 @@ export const createOnsetFinder = (source: SampleSource): OnsetFinder => {
       const firstFrame = Math.floor(from / hop) - margin
       const lastFrame = Math.ceil(to / hop) + margin
       for (let j = firstFrame; j <= lastFrame; j++) {
-        const rise = riseAt(j)
-        if (rise === null) return null
-        if (rise < threshold) continue
-        let isPeak = true
-        for (let i = 1; i <= apart && isPeak; i++) {
-          const before = riseAt(j - i)
-          const after = riseAt(j + i)
-          if (before === null || after === null) return null
-          isPeak = rise > before && rise >= after
+        const here = changeAt(j)
+        if (here === null) return null
+        for (const isEnd of [false, true]) {
+          const of = (change: { rise: number; fall: number }) => (isEnd ? change.fall : change.rise)
+          if (of(here) < (isEnd ? endThreshold : threshold)) continue
+          let isPeak = true
+          for (let i = 1; i <= apart && isPeak; i++) {
+            const before = changeAt(j - i)
+            const after = changeAt(j + i)
+            if (before === null || after === null) return null
+            isPeak = of(here) > of(before) && of(here) >= of(after)
+          }
+          if (!isPeak) continue
+          const onset = refine(j, of(here), isEnd)
+          if (!onset) return null
+          found.push(...onset)
         }
-        if (!isPeak) continue
-        const onset = refine(j, rise)
-        if (!onset) return null
-        if (onset.cut >= from && onset.cut < to) found.push(onset)
       }
       found.sort((a, b) => a.cut - b.cut)
-      return found.filter((one, at) => at === 0 || one.cut - found[at - 1]!.cut > grain * 16)
+      const near = endApartSec * sampleRate
+      const least = grain * 40
+      const kept = found.filter((one, at) =>
+        one.isEnd
+          ? !found.some((other, place) => {
+              const apart = other.cut - one.cut
+              return other !== one && (other.isEnd ? place < at && -apart < near : apart < 0 ? -apart < near : apart < least)
+            })
+          : !found.slice(0, at).some((other) => !other.isEnd && one.cut - other.cut <= grain * 16)
+      )
+      return kept.filter((one) => one.cut >= from && one.cut < to)
     }
   }
 }

@@ -54,7 +54,9 @@ export interface Segment {
 }
 
 /** A region that grows by less than this in energy over the cut is held over. */
-const heldRatio = 2
+const heldRatio = 1.6
+/** So much of what sounded before (by amplitude) has to sound on, or it is chance that a partial of the new note lies there. */
+const heldShare = 0.25
 
 const powerOf = (re: readonly Float64Array[], im: readonly Float64Array[], power: Float64Array) => {
   power.fill(0)
@@ -277,6 +279,8 @@ export const createSegment = (plan: SegmentPlan): Segment => {
     powerOf(pr, pi, before)
     powerOf(xr, xi, power)
     const held: { start: number; end: number; ur: number; ui: number }[] = []
+    let whole = 0
+    let kept = 0
     eachRegion(before, (start, end) => {
       let peak = start
       for (let b = start; b < end; b++) if (before[b]! > before[peak]!) peak = b
@@ -286,7 +290,9 @@ export const createSegment = (plan: SegmentPlan): Segment => {
         early += before[b]!
         late += power[b]!
       }
-      if (late > heldRatio * early || early <= 0) return
+      whole += Math.sqrt(early)
+      if (late > heldRatio * early || late < early / 8 || early <= 0) return
+      kept += Math.sqrt(early)
       const [ur, ui] = angleBetween(yr, yi, pr, pi, start, end)
       let from = peak
       let to = peak + 1
@@ -294,7 +300,7 @@ export const createSegment = (plan: SegmentPlan): Segment => {
       while (to < end && power[to]! <= 8 * before[to]!) to++
       held.push({ start: from, end: to, ur, ui })
     })
-    return held
+    return kept > heldShare * whole ? held : null
   }
 
   const copyFrame = (at: number): boolean => {

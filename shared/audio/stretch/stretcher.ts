@@ -131,7 +131,11 @@ export const createStretcher = (source: SampleSource): Stretcher => {
     const onsets = finder.between(first, Math.max(first, Math.ceil(sourceAtInner(here) + lookSec * sampleRate)))
     if (!onsets) return 'wait'
     const earliest = Math.max(one.cut.inner + Math.round(0.012 * sampleRate), innerFrame + cutFade)
+    const leg = legAtInner(here)
+    const isFaster = leg !== null && leg.speed >= leg.ratio
     for (const onset of onsets) {
+      // Played faster, a release has no room of its own before the next attack.
+      if (onset.isEnd && isFaster) continue
       const inner = innerOfOnset(onset, here)
       if (inner !== null && inner >= earliest) return { inner, source: onset.cut }
     }
@@ -150,7 +154,7 @@ export const createStretcher = (source: SampleSource): Stretcher => {
     // How far the attack reaches that this piece starts with or just after.
     const onsets = finder.between(cut.source - size, cut.source + Math.round(sampleRate * lookSec))
     if (!onsets) return 'wait'
-    const attack = cut.kind === 'attack' ? cut.source : onsets.filter((one) => one.cut <= cut.source).at(-1)?.cut
+    const attack = cut.kind === 'attack' ? cut.source : onsets.filter((one) => !one.isEnd && one.cut <= cut.source).at(-1)?.cut
     const next = following({ cut })
     if (next === 'wait') return 'wait'
     const inner = cut.inner
