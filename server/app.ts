@@ -9,6 +9,7 @@ import pg from 'pg'
 import type { Relation } from '@shared/access/relations'
 import { barMapRoutes } from '@shared/contracts/bar-maps'
 import { accountRoutes } from '@shared/contracts/account'
+import { clipRoutes } from '@shared/contracts/clips'
 import { commentRoutes } from '@shared/contracts/comments'
 import { groupEventRoutes } from '@shared/contracts/group-events'
 import { groupRoutes, invitationRoutes, linkRoutes } from '@shared/contracts/groups'
@@ -41,6 +42,7 @@ import { startRealtime } from '@server/realtime/realtime'
 import { createAccessRepo } from '@server/repositories/access.repo'
 import { createAccountsRepo } from '@server/repositories/accounts.repo'
 import { createAuditRepo } from '@server/repositories/audit.repo'
+import { createClipsRepo } from '@server/repositories/clips.repo'
 import { createCommentsRepo } from '@server/repositories/comments.repo'
 import { createDocumentsRepo } from '@server/repositories/documents.repo'
 import { createEventsRepo } from '@server/repositories/events.repo'
@@ -54,6 +56,7 @@ import { createSessionsRepo } from '@server/repositories/sessions.repo'
 import { createTakesRepo } from '@server/repositories/takes.repo'
 import { createTunesRepo } from '@server/repositories/tunes.repo'
 import { accountHandlers } from '@server/routes/account.routes'
+import { clipHandlers } from '@server/routes/clips.routes'
 import { commentHandlers } from '@server/routes/comments.routes'
 import { documentHandlers } from '@server/routes/documents.routes'
 import { groupEventHandlers } from '@server/routes/group-events.routes'
@@ -64,6 +67,7 @@ import { sessionHandlers } from '@server/routes/sessions.routes'
 import { recordingHandlers, takeHandlers } from '@server/routes/takes.routes'
 import { tuneHandlers } from '@server/routes/tunes.routes'
 import { createAccountService } from '@server/services/account.service'
+import { createClipService } from '@server/services/clips.service'
 import { createCommentService } from '@server/services/comments.service'
 import { createDocumentService } from '@server/services/documents.service'
 import { createGroupEventService } from '@server/services/group-events.service'
@@ -138,6 +142,16 @@ export const buildApp = async ({ config, log, now, limitScale = 1, bounds: given
   const recordings = createRecordingService({ db, recordings: createRecordingsRepo(db), takes, storage, bounds })
   const comments = createCommentService({ db, comments: createCommentsRepo(db), takes: takesRepo, events })
   const savedLoops = createSavedLoopService({ db, savedLoops: createSavedLoopsRepo(db), takes: takesRepo })
+  const clips = createClipService({
+    db,
+    clips: createClipsRepo(db),
+    takes: takesRepo,
+    documents: documentsRepo,
+    storage,
+    queue,
+    bounds,
+    now: nowDate
+  })
   const preferences = createPreferenceService({ preferences: createPreferencesRepo(db) })
   const groupEvents = createGroupEventService({ events, access: accessRepo })
   const audibleSessions = async (userId: string, takeIds: string[]) => {
@@ -224,6 +238,7 @@ export const buildApp = async ({ config, log, now, limitScale = 1, bounds: given
   serve(api, recordingRoutes, recordingHandlers(recordings))
   serve(api, commentRoutes, commentHandlers(comments))
   serve(api, savedLoopRoutes, savedLoopHandlers(savedLoops))
+  serve(api, clipRoutes, clipHandlers(clips))
   serve(api, sessionRoutes, sessionHandlers(sessions))
   api.all('/api/{*path}', () => {
     throw problem('not-found')

@@ -23,6 +23,13 @@ export const limits = {
   savedLoopName: 80,
   /** Loops that one person keeps on one take. */
   savedLoopsPerTake: 200,
+  /** Longest file of a passage, seconds. */
+  clipSec: 600,
+  /** Such files live this long, days. */
+  clipDays: 7,
+  /** Of one person: being made or waiting for it, and in all. */
+  clipsUnderWay: 4,
+  clipsPerPerson: 60,
   keyName: 40,
   keysPerAction: 6,
   jsonBytes: 512 * 1024,

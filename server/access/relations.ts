@@ -37,6 +37,10 @@ export const createRelations = (repo: AccessRepo) => {
       const row = await repo.savedLoop(id)
       return row ? heard(await within(take(userId, row.take_id), row.user_id === userId)) : stranger()
     },
+    clip: async (userId, id) => {
+      const row = await repo.clip(id)
+      return row ? heard(await within(take(userId, row.take_id), row.user_id === userId)) : stranger()
+    },
     comment: async (userId, id) => {
       const row = await repo.comment(id)
       return row ? heard(await within(take(userId, row.take_id), row.author_id === userId)) : stranger()

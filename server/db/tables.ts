@@ -1,5 +1,6 @@
 // Row shapes, told to Knex so that a wrong column does not compile.
 import type { Role } from '@shared/contracts/common'
+import type { Clip, ClipSettings } from '@shared/contracts/clips'
 import type { CommentKind } from '@shared/contracts/comments'
 import type { GroupEventType } from '@shared/contracts/group-events'
 import type { TransportState } from '@shared/contracts/sessions'
@@ -188,6 +189,21 @@ export interface SavedLoopRow {
   created_at: Date
   updated_at: Date
 }
+export interface ClipRow {
+  id: string
+  take_id: string
+  user_id: string
+  settings: ClipSettings
+  file_name: string
+  duration_sec: number
+  state: Clip['state']
+  stage: string | null
+  progress: number
+  fault: string | null
+  bytes: number | null
+  created_at: Date
+  expires_at: Date
+}
 export interface SessionRow {
   id: string
   group_id: string
@@ -225,6 +241,7 @@ declare module 'knex/types/tables.js' {
     comments: CommentRow
     replies: ReplyRow
     saved_loops: SavedLoopRow
+    clips: ClipRow
     sessions: SessionRow
     session_people: SessionPersonRow
     seeded: { name: string; at: Date }

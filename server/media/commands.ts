@@ -52,6 +52,16 @@ export const renditionCommand = (sound: Sound): FfmpegCommand =>
     .format('mp4')
     .output(renditionFile)
 
+/** The sound of a clip as AAC in MP4, which every phone plays. */
+export const clipCommand = (sound: Sound, output: string): FfmpegCommand =>
+  fromSamples(sound.sampleRate, sound.channels)
+    .outputOptions([...soundOnly, '-aac_coder', 'fast', '-movflags', '+faststart'])
+    .audioFrequency(renditionRate(sound.sampleRate))
+    .audioCodec('aac')
+    .audioBitrate(sound.channels === 1 ? 128 : 224)
+    .format('mp4')
+    .output(output)
+
 /** Measures loudness and encodes one continuous Opus stream, which is cut into pieces afterwards. */
 export const piecesCommand = (sound: Sound): FfmpegCommand =>
   fromSamples(sound.sampleRate, sound.channels)

@@ -40,3 +40,12 @@ export const createFrameReader = (channels: number) => {
     return samples
   }
 }
+
+/** Channels side by side as one array, frame after frame. */
+export const interleave = (channels: readonly Float32Array[], frames: number): Float32Array => {
+  const mixed = new Float32Array(frames * channels.length)
+  channels.forEach((channel, c) => {
+    for (let i = 0; i < frames; i++) mixed[i * channels.length + c] = channel[i] ?? 0
+  })
+  return mixed
+}

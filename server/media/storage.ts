@@ -33,6 +33,11 @@ export type MediaStorage = {
   find: (takeId: string, part: TakePart) => Promise<StoredFile | undefined>
   /** Where a part lies, whether it is there or not: for answers that express sends with ranges. */
   pathOf: (takeId: string, part: TakePart) => string
+  /** Where the file of a clip of a take lies, or will. */
+  clipPath: (takeId: string, clipId: string) => string
+  removeClip: (takeId: string, clipId: string) => Promise<void>
+  /** The clips that have a file older than `olderThanMs`. */
+  clips: (now: number, olderThanMs: number) => Promise<{ takeId: string; clipId: string }[]>
   /** Ids of the takes that have a folder untouched for `olderThanMs`. */
   takeIds: (now: number, olderThanMs: number) => Promise<string[]>
   /** Removes everything of a take, also what an ingest has begun. */
@@ -52,6 +57,9 @@ export const resolveInside = (root: string, ...parts: string[]): string | undefi
   const inside = relative(resolve(root), path)
   return inside === '' || inside.startsWith('..') || isAbsolute(inside) ? undefined : path
 }
+
+/** Inside a take's folder; a clip is kept under its id, whatever its format. */
+const clipsFolder = 'clips'
 
 const missingCodes = new Set(['ENOENT', 'ENOTDIR'])
 const codeOf = (error: unknown): string => (error instanceof Error && 'code' in error ? String(error.code) : '')
@@ -106,7 +114,7 @@ const folderBytes = async (folder: string): Promise<number> => {
   return sizes.reduce((sum, size) => sum + size, 0)
 }
 
-/** Storage in a local folder: `takes/<id>/original`, `takes/<id>/media/...`, `incoming/...`. */
+/** Storage in a local folder: `takes/<id>/original`, `takes/<id>/media/...`, `takes/<id>/clips/<clip id>`, `incoming/...`. */
 export const createLocalStorage = (root: string): MediaStorage => {
   const takes = join(root, 'takes')
   const incoming = join(root, 'incoming')
@@ -127,7 +135,29 @@ export const createLocalStorage = (root: string): MediaStorage => {
     return gone.length
   }
 
+  const clipPath = (takeId: string, clipId: string): string => {
+    if (!uuid.test(clipId)) throw new Error('Not a clip id')
+    return inTake(takeId, clipsFolder, clipId)
+  }
+
   return {
+    clipPath,
+    removeClip: (takeId, clipId) => rm(clipPath(takeId, clipId), { force: true }),
+    async clips(now, olderThanMs) {
+      const takeIds = ((await readdir(takes).catch(noneIfMissing)) ?? []).filter((id) => uuid.test(id))
+      const found = await Promise.all(
+        takeIds.map(async (takeId) => {
+          const ids = ((await readdir(inTake(takeId, clipsFolder)).catch(noneIfMissing)) ?? []).filter((id) =>
+            uuid.test(id)
+          )
+          const ages = await Promise.all(
+            ids.map(async (id) => now - ((await stat(clipPath(takeId, id)).catch(noneIfMissing))?.mtimeMs ?? now))
+          )
+          return ids.filter((_, at) => (ages[at] ?? 0) > olderThanMs).map((clipId) => ({ takeId, clipId }))
+        })
+      )
+      return found.flat()
+    },
     async incomingFolder() {
       await mkdir(incoming, { recursive: true, mode: 0o700 })
       return incoming

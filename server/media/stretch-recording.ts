@@ -8,6 +8,7 @@ import type { SampleSource } from '@shared/audio/stretch/types.ts'
 import { err, ok, type Result } from '@shared/result.ts'
 import { decodeSource } from './decode.ts'
 import { mediaFault, storageError, type MediaFault } from './faults.ts'
+import { interleave } from './frames.ts'
 import { probeSource, type Probe } from './probe.ts'
 import { openSoundFile } from './sound-file.ts'
 import { createWavWriter, fitsWav } from './wav-writer.ts'
@@ -23,14 +24,6 @@ const limits = { maxDurationSec: 24 * 3600, minDurationSec: 0 }
 /** A result that is too loud is brought here, true peaks included where it is limited. */
 const ceilingDb = -0.1
 const mostLoweredDb = 1
-
-const mix = (channels: readonly Float32Array[], frames: number): Float32Array => {
-  const mixed = new Float32Array(frames * channels.length)
-  channels.forEach((channel, c) => {
-    for (let i = 0; i < frames; i++) mixed[i * channels.length + c] = channel[i] ?? 0
-  })
-  return mixed
-}
 
 /** Renders into a file of floats, because only the whole says how loud its loudest sample is. */
 const render = async (
@@ -53,7 +46,7 @@ const render = async (
       const out = Array.from({ length: source.channels }, () => new Float32Array(Math.min(blockFrames, frames - done)))
       const count = stretcher.render(out, 0, out[0]?.length ?? 0)
       if (count === 0) throw new Error('The stretcher gave nothing')
-      const mixed = mix(out, count)
+      const mixed = interleave(out, count)
       for (const sample of mixed) peak = Math.max(peak, Math.abs(sample))
       await file.appendFile(new Uint8Array(mixed.buffer))
       done += count
@@ -84,7 +77,7 @@ const write = async (
       limiter?.process(block, 0, count)
       const skip = Math.min(count, Math.max(0, late - at))
       await wav.write(
-        mix(
+        interleave(
           block.map((channel) => channel.subarray(skip)),
           count - skip
         )

@@ -65,6 +65,7 @@ export const createAccessRepo = (db: Db) => ({
       .where('replies.id', id)
       .first('comments.take_id', 'replies.author_id'),
   savedLoop: (id: string) => db('saved_loops').where({ id }).first('take_id', 'user_id'),
+  clip: (id: string) => db('clips').where({ id }).where('expires_at', '>', db.fn.now()).first('take_id', 'user_id'),
   session: (id: string) => db('sessions').where({ id }).first('take_id', 'started_by'),
   takeStanding: async (userId: string, takeId: string): Promise<TakeStanding | null> => {
     const result = await db.raw<{ rows: TakeStandingRow[] }>(

@@ -7,6 +7,7 @@ export type Resource =
   | 'tune'
   | 'take'
   | 'savedLoop'
+  | 'clip'
   | 'comment'
   | 'reply'
   | 'invitation'
@@ -72,6 +73,9 @@ export const permissions = {
 
   'saved-loop:change': on('savedLoop', ['author']),
   'saved-loop:delete': on('savedLoop', ['author']),
+
+  'clip:read': on('clip', ['author']),
+  'clip:delete': on('clip', ['author']),
 
   'comment:edit': on('comment', ['author'], hearing),
   'comment:delete': on('comment', ['author', 'takeOwner', 'owner'], hearing),

@@ -20,7 +20,7 @@ export const relations = [
   'hearer',
   /** A listener of the group who may hear a take shared with the group. */
   'guestHearer',
-  /** Wrote the comment or reply, keeps the loop, made the invitation, is a side of the link. */
+  /** Wrote the comment or reply, keeps the loop, asked for the clip, made the invitation, is a side of the link. */
   'author',
   'operator'
 ] as const

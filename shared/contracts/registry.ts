@@ -1,6 +1,7 @@
 // Every route there is. What is not here is not served (a test walks the server's router to make sure).
 import { accountRoutes } from '@shared/contracts/account'
 import { barMapRoutes } from '@shared/contracts/bar-maps'
+import { clipRoutes } from '@shared/contracts/clips'
 import { commentRoutes } from '@shared/contracts/comments'
 import { groupEventRoutes } from '@shared/contracts/group-events'
 import { groupRoutes, invitationRoutes, linkRoutes } from '@shared/contracts/groups'
@@ -27,6 +28,7 @@ export const registry = {
   barMaps: barMapRoutes,
   comments: commentRoutes,
   savedLoops: savedLoopRoutes,
+  clips: clipRoutes,
   sessions: sessionRoutes
 } as const
 

@@ -6,7 +6,7 @@ import { allRoutes } from '@shared/contracts/registry'
 import { addressOf, type RouteDef } from '@shared/contracts/route'
 import { expected } from '../support/access-table.ts'
 import { type Method, type Person, startApp, type TestApp } from '../support/app.ts'
-import { buildGroup, buildInvitation, newId } from '../support/build.ts'
+import { buildGroup, buildInvitation, clipSettings, newId } from '../support/build.ts'
 import { makeRecording, scratchFolder, sine } from '../support/media.ts'
 import { type AskerKey, askerKeys, emailOf, idOf, password } from '../support/people.ts'
 import { type Ids, missing, relationsTo, targetCases, type TargetKind } from '../support/world.ts'
@@ -30,7 +30,7 @@ let app: TestApp
 let recording: Buffer
 let folder: string
 beforeAll(async () => {
-  app = await startApp()
+  app = await startApp({ bounds: { clipsUnderWay: 1000, clipsPerPerson: 1000 } })
 })
 afterAll(() => app?.close())
 
@@ -177,6 +177,11 @@ const rows: Record<string, Row> = {
   },
   'savedLoops.change': { body: () => ({ name: 'The last four' }) },
   'savedLoops.remove': { isSpent: true },
+  'clips.list': {},
+  'clips.create': { body: () => ({ ...one(), settings: clipSettings() }) },
+  'clips.get': {},
+  'clips.file': {},
+  'clips.remove': { isSpent: true },
   'sessions.live': {},
   'sessions.start': { body: one },
   'sessions.get': {},

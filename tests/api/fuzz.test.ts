@@ -6,6 +6,7 @@ import { addressOf } from '@shared/contracts/route'
 import { ProblemBody } from '@shared/errors/problems'
 import { type Method, type Person, startApp, type TestApp } from '../support/app.ts'
 import {
+  buildClip,
   buildComment,
   buildGroup,
   buildInvitation,
@@ -34,6 +35,7 @@ beforeAll(async () => {
     takeId,
     commentId,
     replyId: await buildReply(app, { commentId, by: 'mara' }),
+    clipId: await buildClip(app, { takeId, by: 'mara' }),
     savedLoopId: await buildSavedLoop(app, { takeId, by: 'mara' }),
     tuneId: await buildTune(app, { groupId, by: 'mara' }),
     sessionId: await buildSession(app, { takeId, groupId, by: 'mara' }),

@@ -1,8 +1,9 @@
 // The command that stretches a recording, measured by aubio (Debian's aubio-tools), which knows nothing of our core.
-import { execFileSync, spawnSync } from 'node:child_process'
+import { spawnSync } from 'node:child_process'
 import { existsSync, readdirSync, readFileSync, statSync, writeFileSync } from 'node:fs'
 import { join, resolve } from 'node:path'
 import { describe, expect, it } from 'vitest'
+import { onsetsByAubio, pitchByAubio } from '../support/aubio.ts'
 import { decode, ffmpeg, ffprobe, makeRecording, pluckedBass, scratchFolder } from '../support/media.ts'
 
 const cli = resolve(import.meta.dirname, '../../server/setup/cli.mjs')
@@ -12,24 +13,6 @@ const stretch = (...args: string[]) => {
   return { status, stdout, stderr }
 }
 const silent = { status: 0, stdout: '', stderr: '' }
-
-/** Median over the whole file. A window of 8192 holds a dozen periods of the lowest tone here. */
-const pitchByAubio = (path: string): number => {
-  const lines = execFileSync('aubiopitch', ['-i', path, '-p', 'yinfft', '-B', '8192', '-H', '2048'], {
-    encoding: 'utf8'
-  })
-  const found = lines
-    .split('\n')
-    .map((line) => Number(line.split(/\s+/)[1]))
-    .filter((hertz) => hertz > 0)
-  return found.sort((a, b) => a - b)[found.length >> 1] ?? NaN
-}
-
-const onsetsByAubio = (path: string): number[] =>
-  execFileSync('aubioonset', ['-i', path, '-O', 'energy', '-H', '64', '-B', '512', '-M', '0.1'], { encoding: 'utf8' })
-    .trim()
-    .split('\n')
-    .map(Number)
 
 const tone = (hertz: number, sec: number) => [
   '-f',

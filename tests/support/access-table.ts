@@ -70,6 +70,8 @@ const table: Record<Permission, string> = {
   // Nobody but its keeper is ever told that it is there.
   'saved-loop:change': 'ahh hhhh hhhhhh +',
   'saved-loop:delete': 'ahh hhhh hhhhhh +',
+  'clip:read': 'ahh hhhh hhhhhh +',
+  'clip:delete': 'ahh hhhh hhhhhh +',
 
   'session:join': 'ahh hhhh ++++++ h',
   'session:steer': 'ahh hhhh ++++++ h',

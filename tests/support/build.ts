@@ -1,5 +1,9 @@
 // Rows as the server would have written them, with what a test does not care about filled in.
 import { randomBytes, randomUUID } from 'node:crypto'
+import { mkdirSync, writeFileSync } from 'node:fs'
+import { join } from 'node:path'
+import { plainAids } from '@shared/audio/listening'
+import type { ClipSettings } from '@shared/contracts/clips'
 import type { Role } from '@shared/contracts/common'
 import type { CommentKind } from '@shared/contracts/comments'
 import type { Reach } from '@shared/contracts/takes'
@@ -135,6 +139,42 @@ export const buildSavedLoop = async (
   })
   return id
 }
+
+/** A finished file of a passage: its row and, in the storage, some bytes. */
+export const buildClip = async (
+  app: Pick<TestApp, 'db' | 'storageDir'>,
+  input: { takeId: string; by?: PersonKey; state?: 'waiting' | 'ready'; expiresAt?: Date }
+): Promise<string> => {
+  const id = newId()
+  const { takeId, by = 'tomas', state = 'ready', expiresAt = new Date(Date.now() + 3600_000) } = input
+  const folder = join(app.storageDir, 'takes', takeId, 'clips')
+  mkdirSync(folder, { recursive: true })
+  if (state === 'ready') writeFileSync(join(folder, id), 'RIFF')
+  await app.db('clips').insert({
+    id,
+    take_id: takeId,
+    user_id: idOf(by),
+    settings: JSON.stringify(clipSettings()) as unknown as ClipSettings,
+    file_name: 'Take, bars 1-2.wav',
+    duration_sec: 2,
+    state,
+    bytes: state === 'ready' ? 4 : null,
+    expires_at: expiresAt
+  })
+  return id
+}
+
+export const clipSettings = (more: Partial<ClipSettings> = {}): ClipSettings => ({
+  span: { startSec: 0.5, endSec: 1.5 },
+  rate: 0.5,
+  semitones: 0,
+  aids: plainAids,
+  click: null,
+  clickLevel: 1,
+  countIn: 'none',
+  format: 'wav',
+  ...more
+})
 
 export const buildInvitation = async (
   { db }: Pick<TestApp, 'db'>,

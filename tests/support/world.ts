@@ -2,6 +2,7 @@
 import type { Relation } from '@shared/access/relations'
 import type { TestApp } from './app.ts'
 import {
+  buildClip,
   buildComment,
   buildGroup,
   buildInvitation,
@@ -56,6 +57,7 @@ type Kind =
   | 'tune'
   | 'take'
   | 'savedLoop'
+  | 'clip'
   | 'comment'
   | 'reply'
   | 'invitation'
@@ -195,6 +197,7 @@ export const targetCases = (app: Pick<TestApp, 'db' | 'storageDir'>): Record<Kin
     savedLoop: inTake(takeCases, speaker, async (takeId, by) => ({
       savedLoopId: await buildSavedLoop(app, { takeId, by })
     })),
+    clip: inTake(takeCases, speaker, async (takeId, by) => ({ clipId: await buildClip(app, { takeId, by }) })),
     comment: inTake(takeCases, speaker, async (takeId, by) => ({ commentId: await buildComment(app, { takeId, by }) })),
     reply: inTake(takeCases, speaker, async (takeId, by) => ({
       replyId: await buildReply(app, { commentId: await buildComment(app, { takeId, by: 'ines' }), by })
