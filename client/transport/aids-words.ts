@@ -25,13 +25,23 @@ export const channelWords: Record<Channel, string> = {
 
 /** All that is not as recorded: "an octave up · low focus to 300 Hz". Null when everything is. */
 export const aidsWords = (aids: Aids, semitones: number): string | null => {
-  const { isOctaveUp, cents, lowFocus, channel } = aids
-  const words = [
+  const { isOctaveUp, lowFocus } = aids
+  return joined([
     isOctaveUp ? 'an octave up' : null,
-    semitones === 0 ? null : semitoneWords(semitones),
-    cents === 0 ? null : centWords(cents),
-    lowFocus.isOn ? `low focus to ${Math.round(lowFocus.topHz)} Hz` : null,
-    channel === 'both' ? null : channelWords[channel]
-  ].filter((part) => part !== null)
-  return words.length > 0 ? words.join(' · ') : null
+    ...pitchWords(aids, semitones),
+    lowFocus.isOn ? `low focus ${topWords(aids)}` : null,
+    sideWords(aids)
+  ])
 }
+
+/** The same where the switches for the octave and for low focus stand beside it: "to 300 Hz · left side". */
+export const besideSwitches = (aids: Aids, semitones: number): string | null =>
+  joined([aids.lowFocus.isOn ? topWords(aids) : null, ...pitchWords(aids, semitones), sideWords(aids)])
+
+const topWords = ({ lowFocus }: Aids): string => `to ${Math.round(lowFocus.topHz)} Hz`
+const sideWords = ({ channel }: Aids): string | null => (channel === 'both' ? null : channelWords[channel])
+const pitchWords = ({ cents }: Aids, semitones: number): (string | null)[] => [
+  semitones === 0 ? null : semitoneWords(semitones),
+  cents === 0 ? null : centWords(cents)
+]
+const joined = (parts: (string | null)[]): string | null => parts.filter((part) => part !== null).join(' · ') || null

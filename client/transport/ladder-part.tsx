@@ -1,7 +1,6 @@
 import { useId, useState, type CSSProperties, type KeyboardEvent } from 'react'
 import { ladderWords, type SpeedLadder } from '@shared/practice/ladder'
 import { readLadder } from '@shared/practice/read-ladder'
-import { Checkbox } from '@client/ui/checkbox'
 import { FieldFaultText } from '@client/ui/field'
 import { Part } from './part'
 import type { LoopMannerControls } from './use-loop-manner'
@@ -16,12 +15,16 @@ export interface LadderPartProps {
 export function LadderPart({ manner, isShared }: LadderPartProps) {
   return (
     <Part label={isShared ? 'Faster, when you practise alone' : 'Faster'}>
-      <Checkbox
-        label={<span className="sr-only">the loop gets faster</span>}
-        checked={manner.isLadderOn && !isShared}
-        disabled={isShared}
-        onChange={(isLadderOn) => manner.set({ isLadderOn })}
-      />
+      <label className="flex min-h-6 min-w-6 items-center">
+        <span className="sr-only">The loop gets faster</span>
+        <input
+          type="checkbox"
+          className="plumb-mark"
+          checked={manner.isLadderOn && !isShared}
+          disabled={isShared}
+          onChange={(event) => manner.set({ isLadderOn: event.target.checked })}
+        />
+      </label>
       <LadderSentence ladder={manner.ladder} disabled={isShared} onLadder={(ladder) => manner.set({ ladder })} />
     </Part>
   )

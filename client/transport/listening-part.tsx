@@ -4,7 +4,7 @@ import { Checkbox } from '@client/ui/checkbox'
 import { Popover } from '@client/ui/popover'
 import { Select } from '@client/ui/select'
 import { Slider } from '@client/ui/slider'
-import { aidsWords, centWords, channelWords, semitoneWords } from './aids-words'
+import { aidsWords, besideSwitches, centWords, channelWords, semitoneWords } from './aids-words'
 import { Part, WordsButton } from './part'
 import { semitoneLimit, type AidsControls } from './use-aids'
 
@@ -23,22 +23,26 @@ export function ListeningPart({ listening }: { listening: AidsControls }) {
   const { aids, semitones, can } = listening
   return (
     <Part label="Listening">
-      <OctaveSwitch {...listening} />
-      <LowFocusSwitch {...listening} />
-      <Popover
-        label="Listening"
-        renderTrigger={(trigger) => (
-          <WordsButton {...trigger} aria-haspopup="dialog" disabled={!can.aids && !can.pitch}>
-            {aidsWords(aids, semitones) ?? 'as recorded'}
-          </WordsButton>
-        )}
-      >
-        {() => (
-          <div className="w-72 max-w-full">
-            <ListeningSettings listening={listening} />
-          </div>
-        )}
-      </Popover>
+      <span className="pr-3">
+        <OctaveSwitch {...listening} />
+      </span>
+      <span className="flex min-w-0 flex-wrap items-center gap-x-2">
+        <LowFocusSwitch {...listening} />
+        <Popover
+          label="Listening"
+          renderTrigger={(trigger) => (
+            <WordsButton {...trigger} aria-haspopup="dialog" disabled={!can.aids && !can.pitch}>
+              {besideSwitches(aids, semitones) ?? (aids.isOctaveUp ? 'nothing else' : 'as recorded')}
+            </WordsButton>
+          )}
+        >
+          {() => (
+            <div className="w-72 max-w-full">
+              <ListeningSettings listening={listening} />
+            </div>
+          )}
+        </Popover>
+      </span>
     </Part>
   )
 }

@@ -28,9 +28,9 @@ export function LoopPart(props: LoopPartProps) {
     ? null
     : [restBeats > 0 ? `${beats(restBeats)} of rest` : null, hasSoftEnds ? 'soft ends' : null].filter(Boolean)
   return (
-    <Part label={props.kept ? 'Rest and kept loops' : 'Rest'}>
+    <Part label={props.kept ? 'Loops and rest' : 'Rest'}>
       <Popover
-        label={props.kept ? 'Rest and kept loops' : 'Rest between passes'}
+        label={props.kept ? 'Loops and rest' : 'Rest between passes'}
         align="end"
         renderTrigger={(trigger) => (
           <WordsButton {...trigger} aria-haspopup="dialog">

@@ -24,20 +24,20 @@ export function LoopWords({ words, isOn, turns, percent, keys, onToggle }: LoopW
       onClick={onToggle}
       className="grid min-h-9 min-w-0 flex-1 rounded text-left leading-tight not-disabled:hover:bg-wash sm:max-w-72 sm:min-w-44"
     >
-      <span className="text-xs text-pencil">{isOn || words === null ? 'Loop' : 'Loop, off'}</span>
-      {words === null ? (
-        <span className="truncate text-pencil">select bars to loop them</span>
-      ) : (
-        <span className="truncate">
-          {words}
-          {isOn ? (
-            <span className="text-pencil">
-              {' '}
-              · {ordinal(turns + 1)} time{percent === null ? null : ` at ${percent} %`}
-            </span>
-          ) : null}
-        </span>
-      )}
+      <span className="truncate text-xs text-pencil">
+        {isOn ? (
+          <>
+            Loop · {ordinal(turns + 1)} time{percent === null ? null : ` at ${percent} %`}
+          </>
+        ) : words === null ? (
+          'Loop'
+        ) : (
+          'Loop, off'
+        )}
+      </span>
+      <span className={words === null ? 'truncate text-pencil' : 'truncate'}>
+        {words ?? 'select bars to loop them'}
+      </span>
     </button>
   )
 }

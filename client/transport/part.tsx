@@ -6,7 +6,7 @@ export const Part = ({ label, children }: { label: string; children: ReactNode }
     <span aria-hidden="true" className="text-xs text-pencil">
       {label}
     </span>
-    <div className="flex min-h-7 min-w-0 flex-wrap items-center gap-x-3 gap-y-1">{children}</div>
+    <div className="flex min-h-7 min-w-0 flex-wrap items-center gap-x-2 gap-y-1">{children}</div>
   </div>
 )
 

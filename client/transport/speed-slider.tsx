@@ -8,16 +8,20 @@ export interface SpeedSliderProps {
   rate: number
   /** Felt beats a minute at full speed where the line is; null without a bar map. */
   tempoNow: () => number | null
+  /** Little room: "a minute" goes without its beats. */
+  isShort?: boolean
   onRate: (rate: number) => void
 }
 
 const lookMs = 400
 
-export const speedWords = (percent: number, tempo: number | null): string =>
-  tempo === null ? `${percent} %` : `${percent} % · ${Math.round((tempo * percent) / 100)} beats a minute`
+export const speedWords = (percent: number, tempo: number | null, isShort = false): string =>
+  tempo === null
+    ? `${percent} %`
+    : `${percent} % · ${Math.round((tempo * percent) / 100)} ${isShort ? 'a minute' : 'beats a minute'}`
 
 /** Percent, and what that makes of the tempo where the line is. */
-export function SpeedSlider({ rate, tempoNow, onRate }: SpeedSliderProps) {
+export function SpeedSlider({ rate, tempoNow, isShort, onRate }: SpeedSliderProps) {
   const [tempo, setTempo] = useState(tempoNow)
   const latest = useLatest(tempoNow)
   useScope((scope) => {
@@ -32,7 +36,7 @@ export function SpeedSlider({ rate, tempoNow, onRate }: SpeedSliderProps) {
   return (
     <Slider
       label="Speed"
-      says={speedWords(percent, tempo)}
+      says={speedWords(percent, tempo, isShort)}
       value={percent}
       min={rateLimits.min * 100}
       max={rateLimits.max * 100}

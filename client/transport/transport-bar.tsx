@@ -1,37 +1,28 @@
-import type { ReactNode } from 'react'
+import { useRef, useState, type ReactNode } from 'react'
 import { useNarrow } from '@client/lib/use-narrow'
-import { IconButton } from '@client/ui/icon-button'
+import { Button } from '@client/ui/button'
 import { Toolbar } from '@client/ui/toolbar'
 import type { Span } from '@shared/timing/types'
 import { aidsWords } from './aids-words'
 import { ClickPart, type ClickControls } from './click-part'
+import { defaultKeyMap, type KeyBinding } from './keys'
+import { lackWords } from './lack-words'
 import { LadderPart } from './ladder-part'
 import { ListeningPart, OctaveSwitch } from './listening-part'
 import { LoopPart } from './loop-part'
 import { LoopWords } from './loop-words'
-import { defaultKeyMap, type KeyBinding } from './keys'
-import { lackWords } from './lack-words'
-import { ActButton, Part } from './part'
+import { Part } from './part'
 import { PlaceClock } from './place-clock'
 import type { Player } from './player'
 import { PracticeSheet } from './practice-sheet'
 import { SpeedSlider } from './speed-slider'
+import { AgainButton, keysOf, KeysButton, StartButtons, TapButton } from './transport-buttons'
+import type { TransportCommands } from './transport-commands'
 import type { AidsControls } from './use-aids'
 import type { LoopMannerControls } from './use-loop-manner'
 import { usePlayer } from './use-player'
 import type { TapTempoControls } from './use-tap-tempo'
 import { SafeListening, VolumeSlider, type VolumeProps } from './volume'
-
-/** What the bar does; in a session that shares the transport these go through the session instead of the player. */
-export interface TransportCommands {
-  playPause: () => void
-  setRate: (rate: number) => void
-  setLoop: (span: Span | null) => void
-  /** A bar back or on; tenths of a second without bars. */
-  nudge: (direction: 1 | -1) => void
-  /** From two bars before where the line is, and sounding. */
-  againBefore: () => void
-}
 
 export interface TransportBarProps extends VolumeProps {
   player: Player
@@ -56,169 +47,144 @@ export interface TransportBarProps extends VolumeProps {
   onKeySheet: () => void
 }
 
+/** With every choice that may be left out made. */
+export type BarProps = TransportBarProps & {
+  isShared: boolean
+  keyMap: readonly KeyBinding[]
+  /** Passes done; counted where it outlives a change of width. */
+  turns: number
+}
+
 const phonePx = 640
 
 /** What always stands under the desk: the sound, and how it is practised with. */
-export function TransportBar(props: TransportBarProps) {
+export function TransportBar({ isShared = false, keyMap = defaultKeyMap, ...given }: TransportBarProps) {
+  const { turns } = usePlayer(given.player)
+  const props: BarProps = { ...given, isShared, keyMap, turns }
   const isPhone = useNarrow(phonePx)
-  const { capabilities } = usePlayer(props.player)
-  const lacks = props.missing ?? lackWords(capabilities)
-  const said = [props.tapping.words, lacks].filter(Boolean)
   return (
-    <section aria-label="Transport" className="border border-rule bg-sheet px-3 py-2 sm:px-4">
-      <Toolbar label="Transport">{isPhone ? <PhoneRows {...props} /> : <DeskRows {...props} />}</Toolbar>
-      <div role="status">
-        {said.map((words) => (
-          <p key={words} className="pt-1 text-sm text-pencil">
-            {words}
-          </p>
-        ))}
-      </div>
+    <section
+      aria-label="Transport"
+      data-ledge={isPhone ? undefined : true}
+      className="border border-rule bg-sheet px-3 py-2 sm:px-4"
+    >
+      {isPhone ? (
+        <PhoneBar {...props} />
+      ) : (
+        <Toolbar label="Transport">
+          <DeskRows {...props} />
+        </Toolbar>
+      )}
+      <QuietLine {...props} />
     </section>
   )
 }
 
-function DeskRows(props: TransportBarProps) {
-  const { player, commands, listening, manner, click, kept, isShared = false } = props
-  const { rate, state, capabilities } = usePlayer(player)
+function DeskRows(props: BarProps) {
+  const { player, commands, click, tapping, keyMap } = props
+  const { rate, capabilities } = usePlayer(player)
   return (
     <div className="grid w-full min-w-0 gap-2">
-      <div className="flex min-w-0 items-center gap-x-4 xl:gap-x-6">
-        <StartButtons {...props} />
+      <div className="flex min-w-0 flex-wrap items-center gap-x-4 gap-y-1 xl:gap-x-6">
+        <StartButtons player={player} commands={commands} keyMap={keyMap} />
         <PlaceClock player={player} />
         <Loop {...props} />
-        <div className="max-w-60 min-w-32 flex-1">
+        <div className="max-w-60 min-w-48 flex-1">
           <SpeedSlider rate={rate} tempoNow={props.tempoNow} onRate={commands.setRate} />
         </div>
-        <TapButton {...props} />
+        <TapButton onTap={tapping.tap} keyMap={keyMap} />
         <div className="ml-auto flex flex-none items-center gap-2 lg:gap-3">
-          <div className="w-20 lg:w-28">
+          <div className="w-24 xl:w-28">
             <VolumeSlider volume={props.volume} onVolume={props.onVolume} />
           </div>
           <SafeListening />
           <KeysButton onKeySheet={props.onKeySheet} />
         </div>
       </div>
-      <div className="flex min-w-0 flex-wrap items-start gap-x-6 gap-y-1 border-t border-rule pt-1.5 xl:gap-x-9">
-        <ListeningPart listening={listening} />
+      <div className="flex min-w-0 flex-wrap items-start gap-x-6 gap-y-1 border-t border-rule pt-1.5 text-sm xl:gap-x-9 xl:text-base">
+        <ListeningPart listening={props.listening} />
         {click ? <ClickPart click={click} /> : null}
-        <LadderPart manner={manner} isShared={isShared} />
-        <Part label="Again">
-          <AgainButton {...props} isReady={state === 'ready' || state === 'playing'} />
+        <LadderPart manner={props.manner} isShared={props.isShared} />
+        <Part label="Again from">
+          <AgainButton player={player} commands={commands} keyMap={keyMap} />
         </Part>
-        <LoopPart manner={manner} canRest={capabilities.clicks} isShared={isShared} kept={kept} />
+        <LoopPart manner={props.manner} canRest={capabilities.clicks} isShared={props.isShared} kept={props.kept} />
       </div>
     </div>
   )
 }
 
-/** The essentials in two rows, the rest behind one button. */
-function PhoneRows(props: TransportBarProps) {
-  const { player, commands, listening } = props
+/** The essentials in two rows, the rest above them behind one button. */
+function PhoneBar(props: BarProps) {
+  const { player, commands, keyMap } = props
   const { rate, aids, semitones } = usePlayer(player)
+  const [isOpen, setOpen] = useState(false)
+  const practice = useRef<HTMLButtonElement>(null)
   const words = aidsWords(aids, semitones)
   return (
-    <div className="grid w-full min-w-0 gap-1.5">
-      <div className="flex min-w-0 items-center gap-x-3">
-        <StartButtons {...props} />
-        <PlaceClock player={player} />
-        <Loop {...props} />
-      </div>
-      <div className="flex min-w-0 items-center gap-x-3">
-        <div className="min-w-0 flex-1">
-          <SpeedSlider rate={rate} tempoNow={props.tempoNow} onRate={commands.setRate} />
-        </div>
-        <div className="flex-none">
-          <OctaveSwitch {...listening} />
-        </div>
+    <>
+      {isOpen ? (
         <PracticeSheet
           {...props}
-          tapButton={<TapButton {...props} />}
-          againButton={<AgainButton {...props} isReady />}
-          keysButton={<KeysButton onKeySheet={props.onKeySheet} />}
+          onClose={() => {
+            setOpen(false)
+            practice.current?.focus()
+          }}
         />
-      </div>
-      {words ? <p className="truncate text-sm text-pencil">{words}</p> : null}
-    </div>
+      ) : null}
+      <Toolbar label="Transport">
+        <div className="grid w-full min-w-0 gap-1.5">
+          <div className="flex min-w-0 items-center gap-x-3">
+            <StartButtons player={player} commands={commands} keyMap={keyMap} />
+            <PlaceClock player={player} />
+            <Loop {...props} isShort />
+          </div>
+          <div className="flex min-w-0 items-center gap-x-3">
+            <div className="min-w-0 flex-1">
+              <SpeedSlider rate={rate} tempoNow={props.tempoNow} isShort onRate={commands.setRate} />
+            </div>
+            <div className="flex-none text-sm">
+              <OctaveSwitch {...props.listening} />
+            </div>
+            <Button ref={practice} aria-expanded={isOpen} onClick={() => setOpen(!isOpen)}>
+              Practice
+            </Button>
+          </div>
+          {words ? <p className="truncate text-sm text-pencil">{words}</p> : null}
+        </div>
+      </Toolbar>
+    </>
   )
 }
 
-function StartButtons({ player, commands, keyMap = defaultKeyMap }: TransportBarProps) {
-  const { state } = usePlayer(player)
-  const isPlaying = state === 'playing'
-  const isReady = state === 'ready' || isPlaying
-  return (
-    <div className="flex flex-none items-center gap-1 sm:gap-1.5">
-      <IconButton
-        icon="stepBack"
-        label="Back a bar"
-        keys={keysOf(keyMap, 'backBar')}
-        disabled={!isReady}
-        onClick={() => commands.nudge(-1)}
-      />
-      <IconButton
-        look="round"
-        icon={isPlaying ? 'pause' : 'play'}
-        label={isPlaying ? 'Pause' : state === 'loading' ? 'Play when it is loaded' : 'Play'}
-        keys={keysOf(keyMap, 'playPause')}
-        disabled={state === 'empty'}
-        onClick={commands.playPause}
-      />
-      <IconButton
-        icon="stepForward"
-        label="On a bar"
-        keys={keysOf(keyMap, 'onBar')}
-        disabled={!isReady}
-        onClick={() => commands.nudge(1)}
-      />
-    </div>
-  )
-}
-
-function Loop({ player, commands, selection, spanWords, keyMap = defaultKeyMap }: TransportBarProps) {
-  const { loop, rate, turns } = usePlayer(player)
+function Loop(props: BarProps & { isShort?: boolean }) {
+  const { player, commands, selection, spanWords, keyMap, turns, isShort = false } = props
+  const { loop, rate } = usePlayer(player)
   const span = loop?.span ?? selection
   return (
     <LoopWords
       words={span ? spanWords(span) : null}
       isOn={loop !== null}
       turns={turns}
-      percent={loop?.ladder ? Math.round(rate * 100) : null}
+      percent={loop?.ladder && !isShort ? Math.round(rate * 100) : null}
       keys={keysOf(keyMap, 'loop')}
       onToggle={() => commands.setLoop(loop ? null : selection)}
     />
   )
 }
 
-const AgainButton = ({ commands, keyMap = defaultKeyMap, isReady }: TransportBarProps & { isReady: boolean }) => (
-  <ActButton
-    disabled={!isReady}
-    aria-label="Again from two bars before"
-    aria-keyshortcuts={keysOf(keyMap, 'againBefore')}
-    onClick={commands.againBefore}
-  >
-    from two bars before
-  </ActButton>
-)
-
-const TapButton = ({ tapping, keyMap = defaultKeyMap }: TransportBarProps) => (
-  <ActButton aria-label="Tap the tempo" aria-keyshortcuts={keysOf(keyMap, 'tapTempo')} onClick={tapping.tap}>
-    tap
-  </ActButton>
-)
-
-const KeysButton = ({ onKeySheet }: Pick<TransportBarProps, 'onKeySheet'>) => (
-  <button
-    type="button"
-    aria-label="Keys and pedals"
-    aria-haspopup="dialog"
-    aria-keyshortcuts="?"
-    className="min-h-8 min-w-8 rounded px-1 text-sm whitespace-nowrap text-pencil hover:bg-wash hover:text-ink sm:px-2"
-    onClick={onKeySheet}
-  >
-    ? keys
-  </button>
-)
-
-const keysOf = (map: readonly KeyBinding[], action: KeyBinding['action']): string | undefined =>
-  map.find((binding) => binding.action === action)?.keys[0]
+/** Under the bar: what the taps say, what is still wanting, what cannot be done here. */
+function QuietLine({ player, tapping, manner, missing, isShared }: BarProps) {
+  const { capabilities, loop } = usePlayer(player)
+  const wants = manner.isLadderOn && !loop && !isShared ? 'It gets faster as soon as a loop is on.' : null
+  const said = [tapping.words, wants, missing ?? lackWords(capabilities)].filter((words) => words !== null)
+  return (
+    <div role="status">
+      {said.map((words) => (
+        <p key={words} className="pt-1 text-sm text-pencil">
+          {words}
+        </p>
+      ))}
+    </div>
+  )
+}

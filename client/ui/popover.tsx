@@ -44,7 +44,11 @@ export function Popover({ renderTrigger, children, align = 'start', role = 'dial
         element.style.maxHeight = ''
         const { width, height } = element.getBoundingClientRect()
         const view = { width: innerWidth, height: innerHeight }
-        const beside = button.getBoundingClientRect()
+        // A ledge is not covered: what opens from it, and not from a box on it, stands over or under the whole of it.
+        const ledge = button.closest('[data-ledge], [popover]')
+        const { left, right } = button.getBoundingClientRect()
+        const { top, bottom } = (ledge?.matches('[data-ledge]') ? ledge : button).getBoundingClientRect()
+        const beside = { left, right, top, bottom }
         const at = placeBeside(beside, { width, height }, view, align)
         element.style.left = `${at.left}px`
         // Over a button at the foot of the window it stands on that button: what comes into it later pushes it upwards.
