@@ -19,7 +19,7 @@ import { LineTools } from '@client/features/bar-maps/line-tools'
 import { SteadyBars } from '@client/features/bar-maps/steady-bars'
 import { RefusedBars } from '@client/features/bar-maps/refused-bars'
 import { TapPanel } from '@client/features/bar-maps/tap-panel'
-import { usePlayhead } from '@client/features/bar-maps/use-playhead'
+import { usePlayhead } from '@client/transport/use-playhead'
 
 type Part = 'tap' | 'line' | 'count' | 'form'
 

@@ -18,6 +18,8 @@ export interface KeepFormProps {
   groups: readonly Group[]
   /** Fixed where the recording has begun in a group already. */
   isGroupFixed?: boolean
+  /** Fixed where it is known what is played; null is no tune. */
+  fixedTuneId?: string | null
   onKeep: (kept: { key: string; details: KeepDetails }[]) => void
 }
 
@@ -31,16 +33,20 @@ const firstReach = (group: Group | undefined): Reach => (group?.role === 'member
 const noTune = ''
 
 /** What has to be said when recordings are kept: title, group, tune, who may hear them, and that everyone agreed. */
-export function KeepForm({ formId, recordings, groups, isGroupFixed = false, onKeep }: KeepFormProps) {
+export function KeepForm({ formId, recordings, groups, isGroupFixed = false, fixedTuneId, onKeep }: KeepFormProps) {
   const [titles, setTitles] = useState<Record<string, string>>({})
   const [groupId, setGroupId] = useState(groups[0]?.id ?? '')
-  const [tuneId, setTuneId] = useState(noTune)
+  const [tuneId, setTuneId] = useState(fixedTuneId ?? noTune)
   const [chosenReach, setReach] = useState<Reach | null>(null)
   const [hasAgreed, setAgreed] = useState(false)
   const [isChecked, setChecked] = useState(false)
   const titlesId = useId()
   const group = groups.find(({ id }) => id === groupId)
-  const tunes = useRouteQuery(tuneRoutes.list, { params: { groupId } }, { enabled: groupId !== '' })
+  const tunes = useRouteQuery(
+    tuneRoutes.list,
+    { params: { groupId } },
+    { enabled: groupId !== '' && fixedTuneId === undefined }
+  )
   const reach = chosenReach ?? firstReach(group)
   const titleOf = (key: string, first: string) => titles[key] ?? first
 
@@ -96,7 +102,7 @@ export function KeepForm({ formId, recordings, groups, isGroupFixed = false, onK
           {group ? `It goes to ${group.name}.` : 'It goes to a room of your own; you can ask others in later.'}
         </p>
       )}
-      {(tunes.data?.items.length ?? 0) > 0 ? (
+      {fixedTuneId === undefined && (tunes.data?.items.length ?? 0) > 0 ? (
         <Select
           label="Tune"
           optional

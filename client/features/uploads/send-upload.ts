@@ -7,13 +7,14 @@ import type { SendUpload } from './upload-types'
 
 export const sendUpload: SendUpload = ({ id, file, details }, onSent, signal) =>
   new Promise<Take>((resolve, reject) => {
-    const { groupId, title, tuneId, reach } = details
+    const { groupId, title, tuneId, reach, over } = details
     // The fields go first, so that the server can refuse before it has taken in the whole file.
     const form = new FormData()
     form.set('id', id)
     form.set('title', title)
     if (tuneId) form.set('tuneId', tuneId)
     form.set('reach', reach)
+    if (over) form.set('over', JSON.stringify(over))
     form.set('agreed', 'yes')
     form.set('recording', file, file.name)
 

@@ -1,4 +1,4 @@
-import type { Reach, Take } from '@shared/contracts/takes'
+import type { PlayedOver, Reach, Take } from '@shared/contracts/takes'
 
 /** What the person says about a recording when it is kept. */
 export interface KeepDetails {
@@ -6,6 +6,8 @@ export interface KeepDetails {
   title: string
   tuneId?: string
   reach: Reach
+  /** It was played over another take. */
+  over?: PlayedOver
 }
 
 export interface UploadJob {

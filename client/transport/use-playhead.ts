@@ -1,7 +1,7 @@
 import { useState } from 'react'
 import type { Sec } from '@shared/units'
 import { useScope } from '@client/lib/scope'
-import type { Player } from '@client/transport/player'
+import type { Player } from './player'
 
 const lookEveryMs = 100
 
