@@ -12,11 +12,12 @@ export interface DeskActionsProps {
   onPanel: (panel: DeskPanel | null) => void
   onTune: () => void
   onTable: () => void
+  onClip: () => void
   onSettings: () => void
 }
 
 /** What can be done with the take's bars and chords, at the right of the selection's words. */
-export function DeskActions({ take, tune, panel, onPanel, onTune, onTable, onSettings }: DeskActionsProps) {
+export function DeskActions({ take, tune, panel, onPanel, onTune, onTable, onClip, onSettings }: DeskActionsProps) {
   const can = (ability: string) => take.abilities.includes(ability)
   const toggle = (which: DeskPanel) => onPanel(panel === which ? null : which)
   return (
@@ -38,6 +39,11 @@ export function DeskActions({ take, tune, panel, onPanel, onTune, onTable, onSet
       <QuietButton aria-haspopup="dialog" onClick={onTable}>
         Bars and chords as a table
       </QuietButton>
+      {can('take:hear') ? (
+        <QuietButton aria-haspopup="dialog" onClick={onClip}>
+          Keep as a file
+        </QuietButton>
+      ) : null}
       <QuietButton aria-haspopup="dialog" onClick={onSettings}>
         {can('take:edit') ? 'Share and keep' : 'About this take'}
       </QuietButton>

@@ -23,6 +23,7 @@ import { BarsPanel } from './bars-panel'
 import { BarsTable } from './bars-table'
 import { ChartPanel } from './chart-panel'
 import { DeskActions, type DeskPanel } from './desk-actions'
+import { DeskClip } from './desk-clip'
 import { DeskLanes } from './desk-lanes'
 import { DeskMargin } from './desk-margin'
 import { againBefore, DeskTransport } from './desk-transport'
@@ -63,7 +64,7 @@ export function TakeDesk({ me, take, player, missing, onGone }: TakeDeskProps) {
   const [selectedId, setSelectedId] = useState<string | null>(null)
   const [snap, setSnap] = useState<Snap>('bar')
   const [isFollowing, setFollowing] = useState(true)
-  const [open, setOpen] = useState<'keys' | 'table' | 'tune' | 'settings' | null>(null)
+  const [open, setOpen] = useState<'keys' | 'table' | 'tune' | 'clip' | 'settings' | null>(null)
   const [writeCount, setWriteCount] = useState(0)
   const timeline = useRef<TimelineHandle>(null)
   const foot = useRef<HTMLDivElement>(null)
@@ -258,6 +259,7 @@ export function TakeDesk({ me, take, player, missing, onGone }: TakeDeskProps) {
                   onPanel={setPanel}
                   onTune={() => setOpen('tune')}
                   onTable={() => setOpen('table')}
+                  onClip={() => setOpen('clip')}
                   onSettings={() => setOpen('settings')}
                 />
               </div>
@@ -313,6 +315,16 @@ export function TakeDesk({ me, take, player, missing, onGone }: TakeDeskProps) {
             controls.seek(sec)
             timeline.current?.show(sec)
           }}
+          onClose={() => setOpen(null)}
+        />
+      ) : null}
+      {open === 'clip' ? (
+        <DeskClip
+          takeId={take.id}
+          player={player}
+          model={model}
+          practice={practice}
+          selection={selection}
           onClose={() => setOpen(null)}
         />
       ) : null}
