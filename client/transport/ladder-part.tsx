@@ -15,7 +15,7 @@ export interface LadderPartProps {
 export function LadderPart({ manner, isShared }: LadderPartProps) {
   return (
     <Part label={isShared ? 'Faster, when you practise alone' : 'Faster'}>
-      <label className="flex min-h-6 min-w-6 items-center">
+      <label className="flex min-h-7 min-w-6 items-center self-start">
         <span className="sr-only">The loop gets faster</span>
         <input
           type="checkbox"

@@ -48,10 +48,10 @@ export function Toolbar({ label, children }: ToolbarProps) {
       if (target instanceof Element && !ownsArrows(target) && !target.closest('[popover]')) settle(target)
     })
     scope.listen(element, 'keydown', (event) => {
-      const all = controls()
+      // Those that own the arrows are passed over: they would not let go of them.
+      const all = controls().filter((control) => !ownsArrows(control))
       const at = all.indexOf(document.activeElement as HTMLElement)
-      const here = all[at]
-      if (!here || ownsArrows(here) || event.defaultPrevented) return
+      if (at < 0 || event.defaultPrevented) return
       const targets: Record<string, number> = {
         ArrowRight: (at + 1) % all.length,
         ArrowLeft: (at - 1 + all.length) % all.length,

@@ -44,8 +44,9 @@ export function HelpRoute() {
         <PageSection title="Keys and pedals">
           <KeyList map={defaultKeyMap} />
           <p className="max-w-prose text-sm text-pencil">
-            They work on the screen of a take. A pedal that sends page keys goes back a bar with one foot and plays or
-            pauses with the other. Keys rest while you write, and can be switched off on the sheet that ? opens.
+            They work on the screen of a take, and every one of them can be changed on the sheet that ? opens there,
+            also to what your pedal sends. As they come, a pedal that sends page keys goes back a bar with one foot and
+            plays or pauses with the other. Keys rest while you write, and can be switched off on the same sheet.
           </p>
         </PageSection>
         <PageSection title="Ears">

@@ -66,6 +66,22 @@ describe('Toolbar', () => {
     expect(focusedName()).toBe('Loop')
   })
 
+  it('walks past a slider to the buttons behind it', async () => {
+    const user = userEvent.setup()
+    render(
+      <Toolbar label="Transport">
+        <IconButton icon="play" label="Play" />
+        <Slider label="Speed" says="60 %" value={60} min={20} max={150} onChange={() => {}} />
+        <IconButton icon="loop" label="Loop" />
+      </Toolbar>
+    )
+    await user.tab()
+    await user.keyboard('{ArrowRight}')
+    expect(focusedName()).toBe('Loop')
+    await user.keyboard('{ArrowRight}')
+    expect(focusedName()).toBe('Play')
+  })
+
   it('passes over a disabled button and keeps a stop when the one that held it is disabled', async () => {
     const user = userEvent.setup()
     const { rerender } = render(<Transport canUndo={false} />)
