@@ -2,7 +2,7 @@ import type { Take } from '@shared/contracts/takes'
 import type { Tune } from '@shared/contracts/tunes'
 import { QuietButton } from './quiet-button'
 
-export type DeskPanel = 'bars' | 'chart'
+export type DeskPanel = 'bars' | 'chart' | 'over'
 
 export interface DeskActionsProps {
   take: Take
@@ -34,6 +34,11 @@ export function DeskActions({ take, tune, panel, onPanel, onTune, onTable, onCli
       ) : can('take:edit') ? (
         <QuietButton aria-haspopup="dialog" onClick={onTune}>
           Put it to a tune
+        </QuietButton>
+      ) : null}
+      {can('take:hear') ? (
+        <QuietButton aria-expanded={panel === 'over'} onClick={() => toggle('over')}>
+          Record over it
         </QuietButton>
       ) : null}
       <QuietButton aria-haspopup="dialog" onClick={onTable}>

@@ -27,6 +27,7 @@ import { DeskClip } from './desk-clip'
 import { DeskLanes } from './desk-lanes'
 import { DeskMargin } from './desk-margin'
 import { againBefore, DeskTransport } from './desk-transport'
+import { OverPanel } from './over-panel'
 import { PanelBoundary } from './panel-boundary'
 import { PeoplePanel } from './people-panel'
 import type { PlaceAddress } from './place-address'
@@ -66,6 +67,7 @@ export function TakeDesk({ me, take, player, missing, onGone }: TakeDeskProps) {
   const [isFollowing, setFollowing] = useState(true)
   const [open, setOpen] = useState<'keys' | 'table' | 'tune' | 'clip' | 'settings' | null>(null)
   const [writeCount, setWriteCount] = useState(0)
+  const [isRecording, setRecording] = useState(false)
   const timeline = useRef<TimelineHandle>(null)
   const foot = useRef<HTMLDivElement>(null)
   /** The last deletion, while it can be taken back. */
@@ -145,7 +147,7 @@ export function TakeDesk({ me, take, player, missing, onGone }: TakeDeskProps) {
     model,
     selection,
     snap,
-    practice,
+    practice: isRecording ? { ...practice, keys: { ...practice.keys, areOff: true } } : practice,
     timeline,
     onSelect: select,
     onFollow: () => setFollowing(!isFollowing),
@@ -232,6 +234,18 @@ export function TakeDesk({ me, take, player, missing, onGone }: TakeDeskProps) {
                     player={player}
                     controls={controls}
                     selection={selection}
+                    onClose={() => setPanel(null)}
+                  />
+                ) : panel === 'over' ? (
+                  <OverPanel
+                    me={me}
+                    take={take}
+                    player={player}
+                    model={model}
+                    selection={selection}
+                    preferences={{ click: practice.click.settings, countIn: practice.click.countIn }}
+                    onBegin={() => player.state === 'playing' && controls.pause()}
+                    onRunning={setRecording}
                     onClose={() => setPanel(null)}
                   />
                 ) : panel === 'chart' && tune ? (
