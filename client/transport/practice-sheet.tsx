@@ -15,7 +15,9 @@ export function PracticeSheet({ onClose, ...props }: BarProps & { onClose: () =>
   const { player, commands, listening, manner, click, kept, tapping, isShared, keyMap } = props
   const { capabilities } = usePlayer(player)
   const box = useRef<HTMLElement>(null)
-  useEffect(() => box.current?.focus(), [])
+  useEffect(() => {
+    box.current?.focus()
+  }, [])
   return (
     // Esc does from the keyboard what the cross does.
     // oxlint-disable-next-line jsx-a11y/no-noninteractive-element-interactions

@@ -20,11 +20,12 @@ export const useClicks = (player: Player, barMap: BarMap | null, durationSec: Se
     return clicksFor(barMap, click, { startSec: 0, endSec: durationSec })
   }, [barMap, isOn, click, durationSec])
 
-  useEffect(() => player.setClicks(laid, level), [player, laid, level])
-  useEffect(
-    () => player.setCountIn(barMap ? (startSec, rate) => countInFor(barMap, startSec, rate, countIn) : null),
-    [player, barMap, countIn]
-  )
+  useEffect(() => {
+    player.setClicks(laid, level)
+  }, [player, laid, level])
+  useEffect(() => {
+    player.setCountIn(barMap ? (startSec, rate) => countInFor(barMap, startSec, rate, countIn) : null)
+  }, [player, barMap, countIn])
   return {
     settings: click,
     countIn,

@@ -15,7 +15,9 @@ export const useVolume = (player: Player): VolumeProps => {
   if (start === null && isKnown)
     setStart(player.state === 'playing' ? Math.min(quietVolume, preferences.volume) : preferences.volume)
   const volume = chosen ?? start ?? quietVolume
-  useEffect(() => player.setVolume(volume), [player, volume])
+  useEffect(() => {
+    player.setVolume(volume)
+  }, [player, volume])
   return {
     volume,
     onVolume: (next) => {
