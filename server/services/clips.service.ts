@@ -75,7 +75,7 @@ export const createClipService = (deps: Deps) => {
 
     get: (clipId: string): Promise<Clip> => found(clipId),
 
-    create: async (actor: Actor, takeId: string, { id, settings }: CreateClip): Promise<Clip> => {
+    create: async (actor: Actor, takeId: string, { id, place, settings }: CreateClip): Promise<Clip> => {
       const map = await barMapOf(takeId)
       return db.transaction(async (trx) => {
         const home = await takes.home(takeId, trx)
@@ -102,7 +102,7 @@ export const createClipService = (deps: Deps) => {
             takeId,
             userId: actor.id,
             settings: kept,
-            fileName: clipFileName(take.title, kept, map),
+            fileName: clipFileName({ title: take.title, place, map }, kept),
             durationSec: clipSec(kept, map),
             expiresAt: new Date(now().getTime() + bounds.clipDays * dayMs)
           },

@@ -1,5 +1,5 @@
 import { z } from 'zod'
-import { Instant, Seconds, Uuid } from '@shared/contracts/common'
+import { Instant, line, Seconds, Uuid } from '@shared/contracts/common'
 import { defineRoute } from '@shared/contracts/route'
 import { limits } from '@shared/limits'
 import { lowFocusLimits, pitchLimits } from '@shared/audio/listening'
@@ -54,7 +54,8 @@ export const Clip = z.object({
 })
 export type Clip = z.infer<typeof Clip>
 
-export const CreateClip = z.object({ id: Uuid, settings: ClipSettings })
+/** `place` is how the asker's desk calls the passage: the file is named after it. Without it, after bars or times. */
+export const CreateClip = z.object({ id: Uuid, place: line(limits.title).nullable(), settings: ClipSettings })
 export type CreateClip = z.infer<typeof CreateClip>
 
 const TakeParams = z.object({ takeId: Uuid })

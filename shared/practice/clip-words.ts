@@ -4,6 +4,7 @@ import type { ClipSettings } from '@shared/contracts/clips'
 import { clickWords } from '@shared/practice/click-pattern'
 import type { BarMap } from '@shared/timing/bar-map'
 import { timeWords } from '@shared/timing/time-words'
+import type { Span } from '@shared/timing/types'
 
 const percent = (rate: number): string => `${Math.round(rate * 1000) / 10} %`
 
@@ -38,17 +39,23 @@ export const clipWords = (settings: ClipSettings, map: BarMap | null): string[] 
   ].filter((part) => part !== null)
 }
 
-/** `Second try, bars 17-20, 60 %.wav`; by times where there are no bars. As a person would write it: no signs to escape. */
-export const clipFileName = (title: string, settings: ClipSettings, map: BarMap | null): string => {
-  const { span, rate, format } = settings
+export interface ClipNaming {
+  title: string
+  /** `bars 17 to 20, 2nd chorus`; null names it after the take's own bars, or times where there are none. */
+  place: string | null
+  map: BarMap | null
+}
+
+/** `Second try, bars 17 to 20, 2nd chorus, 60 %.wav`: as a person would write it. */
+export const clipFileName = ({ title, place, map }: ClipNaming, { span, rate, format }: ClipSettings): string => {
+  const speed = rate === 1 ? '' : `, ${Math.round(rate * 100)} %`
+  return `${title.trim()}, ${place?.trim() ?? placeIn(span, map)}${speed}.${format}`
+}
+
+const placeIn = (span: Span, map: BarMap | null): string => {
   const bars = map?.barsIn(span) ?? []
   const [first, last] = [bars[0], bars.at(-1)]
-  const place =
-    first === undefined || last === undefined
-      ? `${timeWords(span.startSec)}-${timeWords(span.endSec)}`.replaceAll(':', '.')
-      : first === last
-        ? `bar ${first}`
-        : `bars ${first}-${last}`
-  const speed = rate === 1 ? '' : `, ${Math.round(rate * 100)} %`
-  return `${title.trim()}, ${place}${speed}.${format}`
+  if (first === undefined || last === undefined)
+    return `${timeWords(span.startSec)} to ${timeWords(span.endSec)}`.replaceAll(':', '.')
+  return first === last ? `bar ${first}` : `bars ${first} to ${last}`
 }

@@ -178,7 +178,7 @@ const rows: Record<string, Row> = {
   'savedLoops.change': { body: () => ({ name: 'The last four' }) },
   'savedLoops.remove': { isSpent: true },
   'clips.list': {},
-  'clips.create': { body: () => ({ ...one(), settings: clipSettings() }) },
+  'clips.create': { body: () => ({ ...one(), place: null, settings: clipSettings() }) },
   'clips.get': {},
   'clips.file': {},
   'clips.remove': { isSpent: true },

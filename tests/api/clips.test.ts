@@ -32,7 +32,7 @@ afterAll(async () => {
 const startWorker = (): Running =>
   (worker = run('server/worker.ts', { DATABASE_URL: app.databaseUrl, STORAGE_DIR: app.storageDir }))
 const order = async (by: PersonKey, takeId: string, settings: ClipSettings = clipSettings(), id = newId()) =>
-  callRoute(await app.as(by), clipRoutes.create, { params: { takeId }, body: { id, settings } })
+  callRoute(await app.as(by), clipRoutes.create, { params: { takeId }, body: { id, place: null, settings } })
 const clipOf = async (by: PersonKey, clipId: string): Promise<Clip> =>
   must(await app.as(by), clipRoutes.get, { params: { clipId } })
 const filesOf = (takeId: string): string[] => {
@@ -136,7 +136,7 @@ describe('a file of a passage', () => {
     expect(answer.get('Content-Type')).toBe('audio/wav')
     expect(answer.get('X-Content-Type-Options')).toBe('nosniff')
     expect(answer.get('Content-Disposition')).toBe(
-      `attachment; filename="L_w  Tide, 0.02.0-0.05.0, 20 _.wav"; filename*=UTF-8''L%C3%B6w%20%20Tide%2C%200.02.0-0.05.0%2C%2020%20%25.wav`
+      `attachment; filename="L_w  Tide, 0.02.0 to 0.05.0, 20 _.wav"; filename*=UTF-8''L%C3%B6w%20%20Tide%2C%200.02.0%20to%200.05.0%2C%2020%20%25.wav`
     )
     const file = join(scratchFolder(), 'clip.wav')
     writeFileSync(file, answer.body as Buffer)

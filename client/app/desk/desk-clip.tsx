@@ -30,7 +30,10 @@ export function DeskClip({ takeId, player, model, practice, selection, onClose }
           ? { span, rate, semitones, aids, click, clickLevel: level, isClickOn: isOn, countIn }
           : null
       }
-      wordsFor={(one) => model.placeOf(one).place}
+      wordsFor={(one) => {
+        const { place, where } = model.placeOf(one)
+        return where ? `${place}, ${where}` : place
+      }}
       onClose={onClose}
     />
   )

@@ -2,6 +2,7 @@
 import { useQueryClient } from '@tanstack/react-query'
 import { type Clip, clipRoutes, type ClipSettings } from '@shared/contracts/clips'
 import { addressOf } from '@shared/contracts/route'
+import { limits } from '@shared/limits'
 import type { ApiProblem } from '@client/lib/api'
 import { freshId } from '@client/lib/ids'
 import { routeKey, useRouteMutation, useRouteQuery } from '@client/lib/query'
@@ -21,7 +22,8 @@ export const useClips = (takeId: string) =>
 export const clipUrl = (clipId: string): string => addressOf(clipRoutes.file, { params: { clipId } })
 
 export interface ClipActs {
-  make(settings: ClipSettings): void
+  /** `place` is how the passage is called here. */
+  make(settings: ClipSettings, place: string): void
   isAsking: boolean
   /** Stops making it, or deletes it. */
   remove(clipId: string): void
@@ -43,7 +45,8 @@ export const useClipActs = (takeId: string): ClipActs => {
   })
   const removal = useRouteMutation(clipRoutes.remove, { onSettled: lookAgain })
   return {
-    make: (settings) => create.mutate({ params: { takeId }, body: { id: freshId(), settings } }),
+    make: (settings, place) =>
+      create.mutate({ params: { takeId }, body: { id: freshId(), place: place.slice(0, limits.title), settings } }),
     isAsking: create.isPending,
     remove: (clipId) => {
       show((items) => items.filter(({ id }) => id !== clipId))

@@ -29,7 +29,7 @@ export interface ClipDialogProps {
   barMap: BarMap | null
   /** The loop that is on, or the selection. Null where there is neither. */
   passage: ClipPassage | null
-  /** "bars 17 to 20". */
+  /** "bars 17 to 20, 2nd chorus". */
   wordsFor: (span: Span) => string
   onClose: () => void
 }
@@ -98,7 +98,7 @@ export function ClipDialog({ takeId, barMap, passage, wordsFor, onClose }: ClipD
 type OrderFormProps = Pick<ClipDialogProps, 'barMap' | 'wordsFor'> & {
   passage: ClipPassage
   isAsking: boolean
-  onMake: (settings: ClipSettings) => void
+  onMake: (settings: ClipSettings, place: string) => void
 }
 
 function OrderForm({ passage, barMap, wordsFor, isAsking, onMake }: OrderFormProps) {
@@ -122,7 +122,7 @@ function OrderForm({ passage, barMap, wordsFor, isAsking, onMake }: OrderFormPro
       className="grid gap-4"
       onSubmit={(event) => {
         event.preventDefault()
-        if (!isTooLong && !isAsking) onMake(settings)
+        if (!isTooLong && !isAsking) onMake(settings, wordsFor(span))
       }}
     >
       <div>

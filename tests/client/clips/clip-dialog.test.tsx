@@ -75,7 +75,11 @@ describe('ClipDialog', () => {
     await user.click(screen.getByRole('radio', { name: /^WAV/ }))
     await user.click(screen.getByRole('button', { name: 'Make the file' }))
     await screen.findByText(/Waiting its turn/)
-    expect(asked.find(({ method }) => method === 'POST')?.body).toEqual({ id: expect.any(String), settings })
+    expect(asked.find(({ method }) => method === 'POST')?.body).toEqual({
+      id: expect.any(String),
+      place: 'bars 3 to 4',
+      settings
+    })
     now = clip({ state: 'working', stage: 'Playing it', progress: 0.4 })
     await waitFor(
       () => expect(screen.getByRole('progressbar').getAttribute('aria-valuetext')).toBe('Playing it, 40 %'),

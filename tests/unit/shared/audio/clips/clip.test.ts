@@ -129,10 +129,12 @@ describe('the words of a clip', () => {
   })
 
   it('call the file by its take and place', () => {
-    expect(clipFileName('Slack Tide', settings(), map)).toBe('Slack Tide, bar 2, 50 %.wav')
-    expect(
-      clipFileName('Slack Tide', settings({ span: { startSec: 1, endSec: 5 }, rate: 1, format: 'm4a' }), map)
-    ).toBe('Slack Tide, bars 1-2.m4a')
-    expect(clipFileName('Slack Tide', settings({ rate: 1 }), null)).toBe('Slack Tide, 0.03.0-0.05.0.wav')
+    const named = { title: 'Slack Tide', place: null, map }
+    expect(clipFileName(named, settings())).toBe('Slack Tide, bar 2, 50 %.wav')
+    expect(clipFileName(named, settings({ span: { startSec: 1, endSec: 5 }, rate: 1, format: 'm4a' }))).toBe(
+      'Slack Tide, bars 1 to 2.m4a'
+    )
+    expect(clipFileName({ ...named, map: null }, settings({ rate: 1 }))).toBe('Slack Tide, 0.03.0 to 0.05.0.wav')
+    expect(clipFileName({ ...named, place: 'pick-up' }, settings({ rate: 1 }))).toBe('Slack Tide, pick-up.wav')
   })
 })
