@@ -1,5 +1,6 @@
 import type { Take } from '@shared/contracts/takes'
 import type { Tune } from '@shared/contracts/tunes'
+import { PlayedOver } from '@client/features/takes/played-over'
 import { QuietButton } from './quiet-button'
 
 export type DeskPanel = 'bars' | 'chart' | 'over'
@@ -22,6 +23,7 @@ export function DeskActions({ take, tune, panel, onPanel, onTune, onTable, onCli
   const toggle = (which: DeskPanel) => onPanel(panel === which ? null : which)
   return (
     <div className="flex flex-wrap items-center">
+      {take.overTakeId ? <PlayedOver takeId={take.overTakeId} /> : null}
       {can('take:edit-bars') ? (
         <QuietButton aria-expanded={panel === 'bars'} onClick={() => toggle('bars')}>
           Edit bars

@@ -6,3 +6,11 @@ export const textOf = (blob: Blob): Promise<string> =>
     reader.addEventListener('error', () => reject(reader.error ?? new Error('unreadable')))
     reader.readAsText(blob)
   })
+
+export const bytesOf = (blob: Blob): Promise<ArrayBuffer> =>
+  new Promise((resolve, reject) => {
+    const reader = new FileReader()
+    reader.addEventListener('load', () => resolve(reader.result as ArrayBuffer))
+    reader.addEventListener('error', () => reject(reader.error ?? new Error('unreadable')))
+    reader.readAsArrayBuffer(blob)
+  })
