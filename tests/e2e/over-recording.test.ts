@@ -122,8 +122,8 @@ it('keeps a try where it was heard, to ten milliseconds, under the bars of the t
   const measured = panel.getByText(/ms late, as measured/)
   await measured.waitFor()
   const delayMs = Number(/(-?\d+) ms late/.exec((await measured.textContent()) ?? '')?.[1])
-  expect(delayMs).toBeGreaterThan(wayThere * 1000)
-  expect(delayMs).toBeLessThan(500)
+  // The way back skips the loudspeaker's own delay, which both clocks count: some ten milliseconds either way.
+  expect(Math.abs(delayMs - wayThere * 1000)).toBeLessThan(60)
   await panel.getByRole('button', { name: 'I have them on' }).click()
 
   await panel.getByRole('button', { name: 'Record', exact: true }).click()
