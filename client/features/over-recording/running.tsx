@@ -32,7 +32,9 @@ export function Running({ recorder, stream, player, placeWords }: RunningProps) 
       void scope.interval(() => setNow({ lengthSec: recorder.lengthSec(), placeSec: player.heardPosition }), 100),
     [recorder, player]
   )
-  useEffect(() => box.current?.querySelector('button')?.focus(), [])
+  useEffect(() => {
+    box.current?.querySelector('button')?.focus()
+  }, [])
   return (
     <div ref={box} className="grid gap-3">
       {fault ? <Notice kind="fault">{fault}</Notice> : null}

@@ -34,7 +34,9 @@ export const useOverRecorder = (deps: Deps) => {
   const [lost, setLost] = useState<string | null>(null)
   useEffect(() => () => recorder?.dispose(), [recorder])
   const isRunning = recorder !== null
-  useEffect(() => onRunning?.(isRunning), [onRunning, isRunning])
+  useEffect(() => {
+    onRunning?.(isRunning)
+  }, [onRunning, isRunning])
 
   const begin = async ({ capture, delaySec, choice, span, firstNumber }: Begin): Promise<void> => {
     const isPart = span !== null && choice.where !== 'here'
