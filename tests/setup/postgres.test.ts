@@ -1,21 +1,12 @@
 import { spawn } from 'node:child_process'
-import {
-  chmodSync,
-  chownSync,
-  cpSync,
-  mkdirSync,
-  mkdtempSync,
-  readFileSync,
-  rmSync,
-  statSync,
-  writeFileSync
-} from 'node:fs'
+import { chmodSync, chownSync, mkdirSync, mkdtempSync, readFileSync, rmSync, statSync, writeFileSync } from 'node:fs'
 import net from 'node:net'
 import { tmpdir } from 'node:os'
 import path from 'node:path'
 import { afterAll, afterEach, beforeAll, describe, expect, it } from 'vitest'
 import {
   clearFolders,
+  copyFolder,
   copyOfScripts,
   exited,
   expectNothingLeft,
@@ -37,7 +28,7 @@ const postmasterFile = (folder: string) => path.join(folder, 'data/postmaster.pi
 let template = ''
 const folderWithData = () => {
   const folder = path.join(newFolder(), 'postgres')
-  cpSync(template, folder, { recursive: true })
+  copyFolder(template, folder)
   return folder
 }
 
@@ -51,7 +42,7 @@ afterEach(clearFolders)
 
 describe('the private database', () => {
   it('answers on loopback only, asks for its password and keeps it from others', async () => {
-    const folder = path.join(newFolder(), 'postgres')
+    const folder = folderWithData()
     const user = await openDatabase(folder)
     expect(await query(user.url, 'show listen_addresses')).toEqual([{ listen_addresses: '127.0.0.1' }])
     expect(await query(user.url, 'show unix_socket_directories')).toEqual([{ unix_socket_directories: '' }])

@@ -1,10 +1,12 @@
 import { spawn, type ChildProcess } from 'node:child_process'
-import { cpSync, existsSync, readFileSync, symlinkSync, writeFileSync, mkdirSync } from 'node:fs'
+import { cpSync, existsSync, mkdirSync, mkdtempSync, readFileSync, rmSync, symlinkSync, writeFileSync } from 'node:fs'
 import net from 'node:net'
+import { tmpdir } from 'node:os'
 import path from 'node:path'
-import { afterEach, describe, expect, it } from 'vitest'
+import { afterAll, afterEach, describe, expect, it } from 'vitest'
 import {
   clearFolders,
+  copyFolder,
   exited,
   expectNothingLeft,
   newFolder,
@@ -16,12 +18,15 @@ import {
 } from './support.ts'
 
 /** A project of the same shape, whose server, worker and pages are as small as can be. */
-const newProject = (): string => {
-  const folder = newFolder()
+const fillProject = (folder: string): void => {
   cpSync(path.join(root, 'tests/setup/miniature'), folder, { recursive: true })
   cpSync(path.join(root, 'server/setup'), path.join(folder, 'server/setup'), { recursive: true })
   for (const file of ['package.json', 'package-lock.json']) cpSync(path.join(root, file), path.join(folder, file))
   symlinkSync(path.join(root, 'node_modules'), path.join(folder, 'node_modules'))
+}
+const newProject = (): string => {
+  const folder = newFolder()
+  fillProject(folder)
   return folder
 }
 
@@ -59,11 +64,32 @@ const isWell = (port: string) =>
     .then((answer) => answer.ok)
     .catch(() => false)
 
+/** Starts a new project once for the whole file: its first start, with database and pages to make, takes most of the time. */
+let beforehand: Promise<{ project: string; said: string }> | null = null
+const startBeforehand = async () => {
+  const project = path.join(mkdtempSync(path.join(tmpdir(), 'plumbline-setup-')), 'project')
+  fillProject(project)
+  const run = await start(project)
+  await run.isUp()
+  run.process.kill('SIGINT')
+  await exited(run.process)
+  return { project, said: run.said() }
+}
+const startedBefore = async () => {
+  const { project, said } = await (beforehand ??= startBeforehand())
+  const copy = path.join(newFolder(), 'project')
+  copyFolder(project, copy)
+  return { project: copy, said }
+}
+afterAll(async () => {
+  const made = await beforehand?.catch(() => null)
+  if (made) rmSync(path.dirname(made.project), { recursive: true, force: true, maxRetries: 5 })
+})
 afterEach(clearFolders)
 
 describe('npm start', () => {
   it('says where it is and who may sign in, keeps everything running, and stops on Ctrl-C without remains', async () => {
-    const project = newProject()
+    const { project } = await startedBefore()
     const folder = path.join(project, 'storage/postgres')
     const first = await start(project)
     await first.isUp()
@@ -112,7 +138,9 @@ describe('npm start', () => {
   })
 
   it('builds the pages again only when their sources changed', async () => {
-    const project = newProject()
+    const { project, said } = await startedBefore()
+    expect(said).toContain('Building')
+    expect(existsSync(path.join(project, 'storage/build/index.html'))).toBe(true)
     const once = async () => {
       const run = await start(project)
       await run.isUp()
@@ -120,8 +148,6 @@ describe('npm start', () => {
       await exited(run.process)
       return run.said().includes('Building')
     }
-    expect(await once()).toBe(true)
-    expect(existsSync(path.join(project, 'storage/build/index.html'))).toBe(true)
     expect(await once()).toBe(false)
     // git keeps no empty folder, so the miniature may come without this one.
     mkdirSync(path.join(project, 'client'), { recursive: true })
@@ -130,7 +156,7 @@ describe('npm start', () => {
   })
 
   it('lets nothing but the database outlive kill -9, and the next start takes that over', async () => {
-    const project = newProject()
+    const { project } = await startedBefore()
     const folder = path.join(project, 'storage/postgres')
     const first = await start(project)
     await first.isUp()
@@ -148,7 +174,7 @@ describe('npm start', () => {
   })
 
   it('ends with 78, tried once, when the configuration is at fault', async () => {
-    const project = newProject()
+    const { project } = await startedBefore()
     const run = await start(project, 'faulty')
     expect(await exited(run.process)).toBe(78)
     expect(run.said()).not.toContain('started again')
