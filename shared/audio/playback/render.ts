@@ -114,6 +114,16 @@ export const createPlayback = ({ source, settings, sourceFrame, makeStretcher = 
     sync()
   }
 
+  /** A little of the work that the next starts and turns take, so that none of them takes it all at once. */
+  const prepareAhead = (parts: readonly PlanPart[]): void => {
+    const part = partAt(parts, frame)
+    const { rate, trim, ratio, loop } = part.settings
+    if (rate * trim === 1 && ratio === 1 && !loop?.ladder) return
+    const place = placeIn(part, frame)
+    if (!stretcher.prepare(place) || (loop && !stretcher.prepare(loop.startFrame))) return
+    stretcher.prepare(place + sampleRate)
+  }
+
   const noteBegun = (to: number): void => {
     untold.begun.push(...partsNow().filter(({ outFrame }) => outFrame >= frame && outFrame < to))
   }
@@ -143,6 +153,7 @@ export const createPlayback = ({ source, settings, sourceFrame, makeStretcher = 
         sync()
       }
     }
+    prepareAhead(parts)
     envelope(parts, out, frame, frames)
     chain.process(out, 0, frames)
     parts.forEach((part, index) => {

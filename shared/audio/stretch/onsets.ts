@@ -19,6 +19,8 @@ export interface Onset {
 export interface OnsetFinder {
   /** Onsets and ends whose cut lies in the half-open span, rising; null while the source has not got the frames. */
   between(from: number, to: number): readonly Onset[] | null
+  /** Does a small part of the work that `between` needs for the span; true when nothing is left to do. */
+  prepare(from: number, to: number): boolean
   /** Frames beyond an onset that finding it looks at. */
   readonly reach: number
 }
@@ -38,7 +40,7 @@ const endThreshold = 12
 const endApartSec = 0.06
 /** Two onsets are at least this far apart. */
 const apartSec = 0.03
-const chunkFrames = 64
+const chunkFrames = 16
 /** Energy below the loudest moment around by this much is taken for silence. */
 const floorRatio = 1e-5
 
@@ -56,7 +58,7 @@ export const createOnsetFinder = (source: SampleSource): OnsetFinder => {
   const span = Math.max(4, Math.round((meanSec * sampleRate) / hop))
   const mean = new Float64Array(span).map((_, i) => Math.sin((Math.PI * (i + 0.5)) / span) ** 2)
   const meanSum = mean.reduce((sum, one) => sum + one, 0)
-  const around = Math.round((0.4 * sampleRate) / hop)
+  const around = Math.round((0.25 * sampleRate) / hop)
   const apart = Math.max(2, Math.round((apartSec * sampleRate) / hop))
 
   const energies = new Map<number, Float64Array>()
@@ -84,7 +86,7 @@ export const createOnsetFinder = (source: SampleSource): OnsetFinder => {
       made[j * (bandCount + 1) + bandCount] = total
     }
     // A few minutes are enough: what is sought again is reckoned again.
-    if (energies.size > 800) {
+    if (energies.size > 3200) {
       energies.clear()
       rises.clear()
       refined.clear()
@@ -182,7 +184,8 @@ export const createOnsetFinder = (source: SampleSource): OnsetFinder => {
       for (let i = g - 60; i < g - 2; i++) before = Math.max(before, fine[i]!)
       let after = 0
       for (let i = g; i < g + 24; i++) after = Math.max(after, fine[i]!)
-      const score = Math.log((after + loudest * 1e-4) / (before + loudest * 1e-4)) + 0.3 * Math.log(after / loudest + 1e-4)
+      const score =
+        Math.log((after + loudest * 1e-4) / (before + loudest * 1e-4)) + 0.3 * Math.log(after / loudest + 1e-4)
       if (score > best + 1e-9) {
         best = score
         first = g
@@ -197,7 +200,8 @@ export const createOnsetFinder = (source: SampleSource): OnsetFinder => {
     let middle = first
     while (middle < end && fine[middle]! < calm + 0.35 * (peak - calm)) middle++
     const at = (g: number) => start + (isEnd ? fine.length - g : g) * grain
-    const onset = { cut: at(first - 2), anchor: at(middle), strength, isEnd }
+    // A slow attack is put where it begins: that is where the ear, and any measure of it, notices something new.
+    const onset = { cut: at(first - 2), anchor: at(isEnd ? middle : Math.min(middle, first + 3)), strength, isEnd }
     const both = isEnd ? [onset] : [...endBefore(first - 2, start, strength), onset]
     refined.set(key, both)
     return both
@@ -205,6 +209,14 @@ export const createOnsetFinder = (source: SampleSource): OnsetFinder => {
 
   return {
     reach: (span + around + chunkFrames) * hop + size,
+    prepare: (from, to) => {
+      const margin = (around + span) * hop + leadGrains * grain
+      const last = Math.floor((to + margin) / hop / chunkFrames)
+      for (let index = Math.floor((from - margin) / hop / chunkFrames); index <= last; index++) {
+        if (!energies.has(index) && chunk(index)) return false
+      }
+      return true
+    },
     between: (from, to) => {
       const found: Onset[] = []
       // The cut may lie beside the coarse peak by as much as the fine envelope looks.
@@ -237,7 +249,9 @@ export const createOnsetFinder = (source: SampleSource): OnsetFinder => {
         one.isEnd
           ? !found.some((other, place) => {
               const apart = other.cut - one.cut
-              return other !== one && (other.isEnd ? place < at && -apart < near : apart < 0 ? -apart < near : apart < least)
+              return (
+                other !== one && (other.isEnd ? place < at && -apart < near : apart < 0 ? -apart < near : apart < least)
+              )
             })
           : !found.slice(0, at).some((other) => !other.isEnd && one.cut - other.cut <= grain * 16)
       )

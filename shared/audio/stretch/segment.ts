@@ -53,10 +53,23 @@ export interface Segment {
   tail(to: number, length: number): Float64Array[]
 }
 
+/** A frame may be taken this share of a window before or after its wanted place: half the period of a 31 Hz string. */
+const reachShare = 0.2
+/** What the farthest place loses against the wanted one, of the best likeness: a dense sound must not jump about. */
+const farPenalty = 0.8
 /** A region that grows by less than this in energy over the cut is held over. */
 const heldRatio = 1.6
 /** So much of what sounded before (by amplitude) has to sound on, or it is chance that a partial of the new note lies there. */
 const heldShare = 0.25
+
+/**
+ * Frames that do not fit each other (noise, breath, cymbals) add up to less than frames that do: four Hann-squared windows
+ * of unrelated frames make 0.486 of the power. What is missing is given back. A few bins look a little alike by chance.
+ */
+const likenessGain = (likeness: number): number => {
+  const fit = Math.max(0, (likeness - 0.3) / 0.7)
+  return 1 / Math.sqrt(0.486 + 0.514 * fit)
+}
 
 const powerOf = (re: readonly Float64Array[], im: readonly Float64Array[], power: Float64Array) => {
   power.fill(0)
@@ -90,7 +103,8 @@ const eachRegion = (power: Float64Array, found: (start: number, end: number) => 
   if (start < bins) found(start, bins)
 }
 
-/** Unit phasor of the angle from the second spectrum to the first over [start, end), all channels together. */
+/** Unit phasor of the angle from the second spectrum to the first over [start, end), all channels together, and how long their
+ * product was before it was made a unit. */
 const angleBetween = (
   lr: readonly Float64Array[],
   li: readonly Float64Array[],
@@ -98,7 +112,7 @@ const angleBetween = (
   qi: readonly Float64Array[],
   start: number,
   end: number
-): [number, number] => {
+): [number, number, number] => {
   let r = 0
   let m = 0
   for (let c = 0; c < lr.length; c++) {
@@ -109,7 +123,7 @@ const angleBetween = (
     }
   }
   const length = Math.hypot(r, m)
-  return length > 1e-20 ? [r / length, m / length] : [1, 0]
+  return length > 1e-20 ? [r / length, m / length, length] : [1, 0, 0]
 }
 
 export const createSegment = (plan: SegmentPlan): Segment => {
@@ -219,21 +233,25 @@ export const createSegment = (plan: SegmentPlan): Segment => {
     for (let i = 0; i < size; i++) energy += wideWork[i]! * wideWork[i]!
     search.forward(template, tr, ti)
     search.forward(wideWork, sr, si)
+    // Strong low partials alone must not decide: each bin weighs by the square root of its size (Knapp & Carter 1976,
+    // "The generalized correlation method", between plain correlation and phase transform).
     for (let k = 0; k <= size; k++) {
-      const r = sr[k]! * tr[k]! + si[k]! * ti[k]!
-      si[k] = si[k]! * tr[k]! - sr[k]! * ti[k]!
+      const weight = (tr[k]! ** 2 + ti[k]! ** 2 + 1e-12) ** -0.25
+      const r = (sr[k]! * tr[k]! + si[k]! * ti[k]!) * weight
+      si[k] = (si[k]! * tr[k]! - sr[k]! * ti[k]!) * weight
       sr[k] = r
     }
     const likeness = new Float64Array(size * 2)
     search.inverse(sr, si, likeness)
-    let templateEnergy = 1e-12
-    for (let i = 0; i < size; i++) templateEnergy += template[i]! * template[i]!
+    let top = 1e-12
+    for (let d = 0; d < count; d++) top = Math.max(top, Math.abs(likeness[d]!))
+    const first = energy
     let best = low
     let bestScore = -Infinity
     const scale = (high - low) / 2 || 1
     for (let d = 0; d < count; d++) {
       const off = (low + d - wanted) / scale
-      const score = likeness[d]! / Math.sqrt(energy * templateEnergy) - 0.04 * off * off
+      const score = (likeness[d]! / top) * Math.sqrt(first / energy) - farPenalty * off * off
       if (score > bestScore) {
         bestScore = score
         best = low + d
@@ -249,9 +267,23 @@ export const createSegment = (plan: SegmentPlan): Segment => {
   const turn = () => {
     powerOf(xr, xi, power)
     eachRegion(power, (start, end) => {
-      const [ur, ui] = angleBetween(yr, yi, pr, pi, start, end)
-      turnRegion(start, end, ur, ui)
+      const [ur, ui, length] = angleBetween(yr, yi, pr, pi, start, end)
+      const gain = likenessGain(likenessOf(length, start, end))
+      turnRegion(start, end, ur * gain, ui * gain)
     })
+  }
+
+  /** How alike the last frame and the true predecessor are over a region, 0-1. */
+  const likenessOf = (length: number, start: number, end: number): number => {
+    let [mine, theirs] = [1e-30, 1e-30]
+    for (let c = 0; c < channels; c++) {
+      const [lr, li, qr, qi] = [yr[c]!, yi[c]!, pr[c]!, pi[c]!]
+      for (let b = start; b < end; b++) {
+        mine += lr[b]! * lr[b]! + li[b]! * li[b]!
+        theirs += qr[b]! * qr[b]! + qi[b]! * qi[b]!
+      }
+    }
+    return Math.min(1, length / Math.sqrt(mine * theirs))
   }
 
   const turnRegion = (start: number, end: number, ur: number, ui: number) => {
@@ -345,7 +377,7 @@ export const createSegment = (plan: SegmentPlan): Segment => {
   const whereNext = (centre: number): { wanted: number; low: number; high: number } | null => {
     const aim = plan.aim(centre)
     if (!aim) return null
-    const reach = Math.round(hop * 0.8)
+    const reach = Math.round(size * reachShare)
     edge = aim.isEnd ? aim.source : Infinity
     if (aim.isEnd && centre >= aim.inner - half) {
       // The end is copied like the beginning, early rather than late, so that it meets the attack without a gap.
@@ -399,7 +431,7 @@ export const createSegment = (plan: SegmentPlan): Segment => {
     return true
   }
 
-  const held = plan.tail ? heldOver(plan.tail) ?? [] : []
+  const held = plan.tail ? (heldOver(plan.tail) ?? []) : []
 
   return {
     innerAt,

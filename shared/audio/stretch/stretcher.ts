@@ -18,7 +18,7 @@ const catchUpSec = 0.45
 /** Attacks closer than this make one. */
 const leastApartSec = 0.02
 /** How far ahead a piece looks for the next attack when it chooses its window, seconds of source. */
-const lookSec = 1.1
+const lookSec = 0.6
 
 interface InnerLeg extends Leg {
   /** Inner frame at which it begins. */
@@ -154,12 +154,13 @@ export const createStretcher = (source: SampleSource): Stretcher => {
     // How far the attack reaches that this piece starts with or just after.
     const onsets = finder.between(cut.source - size, cut.source + Math.round(sampleRate * lookSec))
     if (!onsets) return 'wait'
-    const attack = cut.kind === 'attack' ? cut.source : onsets.filter((one) => !one.isEnd && one.cut <= cut.source).at(-1)?.cut
+    const attack =
+      cut.kind === 'attack' ? cut.source : onsets.filter((one) => !one.isEnd && one.cut <= cut.source).at(-1)?.cut
     const next = following({ cut })
     if (next === 'wait') return 'wait'
     const inner = cut.inner
     const room = next ? Math.min(next.source - cut.source, next.inner - inner) : Infinity
-    const bench = benches.find((one) => one.size * (one.size > size ? 6 : 1.05) <= room) ?? benches.at(-1)!
+    const bench = benches.find((one) => one.size * (one.size > size ? 3 : 1.05) <= room) ?? benches.at(-1)!
     const half = bench.size >> 1
     const longest = Math.max(0.75 * half, Math.min(half + bench.hop, room - bench.size))
     const copied = Math.max(0, Math.round(attack === undefined ? 0 : attack + longest - cut.source))
@@ -287,6 +288,8 @@ export const createStretcher = (source: SampleSource): Stretcher => {
     },
     reach: { before: finder.reach + 4 * size, after: finder.reach + Math.round(lookSec * sampleRate) + 6 * size },
     schedule,
+    prepare: (sourceFrame) =>
+      finder.prepare(sourceFrame - 2 * size, sourceFrame + Math.round(lookSec * sampleRate) + 2 * size),
     sourceFrameAt: (out) => {
       const leg = legAtOut(out)
       if (!leg) return 0

@@ -37,6 +37,11 @@ export interface Stretcher {
    * source has not got the frames yet.
    */
   render(out: readonly Float32Array[], offset: number, frames: number): number
+  /**
+   * Does about a millisecond of the work that starting at a source frame takes, for calling ahead of a jump; true when all
+   * of it is done. Frames the source has not got are left out.
+   */
+  prepare(sourceFrame: number): boolean
   /** Source frames that rendering at `sourceFrame` may look at, before and after it. */
   readonly reach: { before: number; after: number }
 }
