@@ -3,32 +3,38 @@ import { AxeBuilder } from '@axe-core/playwright'
 import type { Page } from 'playwright-core'
 import { expect } from 'vitest'
 
-/** Axe would copy the styles of shadow trees into a document of its own, which the policy refuses and reports. */
-const quiet = { preload: false }
+/**
+ * Axe would copy the styles of shadow trees into a document of its own, which the policy refuses and reports. What is
+ * not wrong it need not describe.
+ */
+const quiet: RunOptions = { preload: false, resultTypes: ['violations'] }
+type RunOptions = Parameters<AxeBuilder['options']>[0]
 const tags = ['wcag2a', 'wcag2aa', 'wcag21a', 'wcag21aa', 'wcag22aa', 'best-practice']
 
-const violationsOf = async (builder: AxeBuilder): Promise<string[]> =>
-  (await builder.analyze()).violations.flatMap(({ id, nodes }) =>
+/** In the page itself: there is no frame within it, for which axe would gather its findings on a page of their own. */
+const violationsOf = async (page: Page, within: string, options: RunOptions): Promise<string[]> =>
+  (
+    await new AxeBuilder({ page })
+      .setLegacyMode()
+      .include(within)
+      .options({ ...quiet, ...options })
+      .analyze()
+  ).violations.flatMap(({ id, nodes }) =>
     // What lies under the transport at the foot is scrolled out from there.
     nodes
       .filter(({ failureSummary }) => !failureSummary?.includes('obscured'))
       .map(({ target, failureSummary }) => `${id}: ${target.join(' ')} ${failureSummary?.split('\n')[1] ?? ''}`)
   )
 
-/** Everything in daylight, with target sizes of 24 px (WCAG 2.2, 2.5.8); the colours once more late in the evening. */
-export const expectNoViolations = async (page: Page, what: string): Promise<void> => {
+/** `within`: what is new, where the rest of the page has been looked at. Everything in daylight, with target sizes of 24 px (WCAG 2.2, 2.5.8); the colours once more late in the evening. */
+export const expectNoViolations = async (page: Page, what: string, within = 'html'): Promise<void> => {
   await page.emulateMedia({ colorScheme: 'light' })
-  const day = await violationsOf(
-    new AxeBuilder({ page }).options({
-      ...quiet,
-      runOnly: { type: 'tag', values: tags },
-      rules: { 'target-size': { enabled: true } }
-    })
-  )
+  const day = await violationsOf(page, within, {
+    runOnly: { type: 'tag', values: tags },
+    rules: { 'target-size': { enabled: true } }
+  })
   await page.emulateMedia({ colorScheme: 'dark' })
-  const night = await violationsOf(
-    new AxeBuilder({ page }).options({ ...quiet, runOnly: ['color-contrast', 'link-in-text-block'] })
-  )
+  const night = await violationsOf(page, within, { runOnly: ['color-contrast', 'link-in-text-block'] })
   await page.emulateMedia({ colorScheme: 'light' })
   expect.soft(day.join('\n'), `${what}, light`).toBe('')
   expect.soft(night.join('\n'), `${what}, dark`).toBe('')
@@ -58,20 +64,18 @@ const settled = async (page: Page): Promise<{ over: number; culprits: string[] }
 }
 
 /** No scrolling to the side, and targets of 24 px or room around them, at each width. */
-export const expectToFit = async (page: Page, what: string, widths = [360, 320]): Promise<void> => {
+export const expectToFit = async (page: Page, what: string, within = 'html'): Promise<void> => {
+  const widths = [360, 320]
   const before = page.viewportSize()
   for (const width of widths) {
     await page.setViewportSize({ width, height: 740 })
     const { over, culprits } = await settled(page)
     expect.soft(over > 0 ? culprits.join('\n') : '', `${what} at ${width} px`).toBe('')
   }
-  const small = await violationsOf(
-    new AxeBuilder({ page }).options({
-      ...quiet,
-      runOnly: ['target-size'],
-      rules: { 'target-size': { enabled: true } }
-    })
-  )
+  const small = await violationsOf(page, within, {
+    runOnly: ['target-size'],
+    rules: { 'target-size': { enabled: true } }
+  })
   expect.soft(small.join('\n'), `${what}, targets at ${widths.at(-1)} px`).toBe('')
   if (before) await page.setViewportSize(before)
 }
