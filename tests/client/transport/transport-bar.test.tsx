@@ -21,7 +21,7 @@ afterEach(cleanup)
 
 const selection = { startSec: 4, endSec: 12 }
 const fourFour = { upper: 4, lower: 4, pulse: 1 }
-type Extra = Partial<TransportBarProps> & { hasClick?: boolean; meter?: typeof fourFour | null }
+type Extra = Partial<Omit<TransportBarProps, 'player'>> & { hasClick?: boolean; meter?: typeof fourFour | null }
 
 function Bar({ player, hasClick = true, meter = fourFour, ...extra }: Extra & { player: PractisingPlayer }) {
   const [topHz, setTopHz] = useState(300)
