@@ -236,6 +236,11 @@ export function TakeDesk({ me, take, player, missing, onGone }: TakeDeskProps) {
                     selection={selection}
                     onClose={() => setPanel(null)}
                   />
+                ) : panel === 'over' && hearing.isShared ? (
+                  <p className="px-4 py-3 text-pencil">
+                    Step away from the session first: recording over the take stops the sound, and that would stop it for
+                    everybody.
+                  </p>
                 ) : panel === 'over' ? (
                   <OverPanel
                     me={me}
