@@ -238,8 +238,8 @@ export function TakeDesk({ me, take, player, missing, onGone }: TakeDeskProps) {
                   />
                 ) : panel === 'over' && hearing.isShared ? (
                   <p className="px-4 py-3 text-pencil">
-                    Step away from the session first: recording over the take stops the sound, and that would stop it for
-                    everybody.
+                    Step away from the session first: recording over the take stops the sound, and that would stop it
+                    for everybody.
                   </p>
                 ) : panel === 'over' ? (
                   <OverPanel
