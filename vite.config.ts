@@ -11,11 +11,17 @@ const alias = [
   ...(process.env['VITEST'] ? [] : [{ find: /^zod$/, replacement: here('./client/lib/zod.ts') }])
 ]
 
-// Journeys and database tests share two cores and one PostgreSQL, so only pure tests run file-parallel.
+// Two files at a time, also on a machine of two cores: most tests wait for processes, and one PostgreSQL is behind them.
+const twoAtATime = { maxWorkers: 2 }
+/** Journeys that look at the clock of a sound: nothing else may run beside them. */
+const alone = ['engine', 'session', 'over-recording'].map((name) => `tests/e2e/${name}.test.ts`)
 const project = (name: string, extra: Record<string, unknown> = {}) => ({
   extends: true as const,
   test: { name, include: [`tests/${name}/**/*.test.{ts,tsx}`], ...extra }
 })
+
+/** Real processes, sockets and sound on a shared machine: what fails once by a hiccup is tried again, what fails always fails. */
+const real = (groupOrder: number) => ({ ...twoAtATime, retry: 1, sequence: { groupOrder } })
 
 // Given by `npm run dev`: where the server answers while Vite serves the page.
 const api = process.env['PLUMBLINE_DEV_API']
@@ -43,15 +49,21 @@ export default defineConfig({
   test: {
     reporters: ['default'],
     projects: [
-      project('unit'),
-      project('architecture'),
-      project('client', { environment: 'jsdom' }),
-      // Real processes, sockets and sound on a shared machine: what fails once by a hiccup is tried again, what fails always fails.
-      project('setup', { retry: 1, fileParallelism: false, testTimeout: 120_000, hookTimeout: 120_000 }),
-      project('api', { retry: 1, fileParallelism: false, testTimeout: 30_000, hookTimeout: 60_000 }),
-      project('realtime', { retry: 1, fileParallelism: false, testTimeout: 30_000, hookTimeout: 60_000 }),
-      project('media', { retry: 1, fileParallelism: false, testTimeout: 60_000, hookTimeout: 60_000 }),
-      project('e2e', { retry: 2, fileParallelism: false, testTimeout: 300_000, hookTimeout: 300_000 })
+      project('unit', twoAtATime),
+      project('architecture', twoAtATime),
+      project('client', { ...twoAtATime, environment: 'jsdom' }),
+      project('setup', { ...real(1), testTimeout: 120_000, hookTimeout: 120_000 }),
+      project('api', { ...real(1), testTimeout: 30_000, hookTimeout: 60_000 }),
+      project('realtime', { ...real(1), testTimeout: 30_000, hookTimeout: 60_000 }),
+      project('media', { ...real(1), testTimeout: 60_000, hookTimeout: 60_000 }),
+      project('e2e', { ...real(2), retry: 2, exclude: alone, testTimeout: 300_000, hookTimeout: 300_000 }),
+      project('e2e-alone', {
+        include: alone,
+        retry: 2,
+        fileParallelism: false,
+        testTimeout: 300_000,
+        hookTimeout: 300_000
+      })
     ]
   }
 })

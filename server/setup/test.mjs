@@ -4,14 +4,17 @@ import path from 'node:path'
 import { ensurePrograms } from './debian.mjs'
 import { ensurePackages } from './packages.mjs'
 import { packageFile, root } from './paths.mjs'
-import { endAll, onStopRequest, run } from './processes.mjs'
+import { capture, endAll, onStopRequest, run } from './processes.mjs'
 import { checkNode, note, report } from './say.mjs'
 import { openTestRoom } from './test-room.mjs'
 
 /** @typedef {{ passed: number, failed: number, skipped: number }} Count */
 
-const args = process.argv.slice(2)
-const output = { cwd: root, stdio: /** @type {['ignore', 'inherit', 'inherit']} */ (['ignore', 'inherit', 'inherit']) }
+// Journeys are two projects, `e2e` and `e2e-alone`: who asks for the one wants both.
+const args = process.argv
+  .slice(2)
+  .map((arg, at, all) => (arg === '--project=e2e' || (arg === 'e2e' && all[at - 1] === '--project') ? `${arg}*` : arg))
+const shown = { cwd: root, stdio: /** @type {['ignore', 'inherit', 'inherit']} */ (['ignore', 'inherit', 'inherit']) }
 
 const checks = [
   { name: 'types', script: 'typescript/bin/tsc', args: ['-b'] },
@@ -29,20 +32,24 @@ const projects = () => {
   return named.length > 0 ? named : inPaths.length > 0 ? inPaths : null
 }
 
-/** @returns {Promise<Count>} one for each check */
+const nothing = () => ({ passed: 0, failed: 0, skipped: 0 })
+
+/** All at once, each saying what it has to say when it is done. @returns {Promise<Count>} one for each check */
 const runChecks = async () => {
-  const count = { passed: 0, failed: 0, skipped: 0 }
-  for (const check of checks) {
-    const code = await run(process.execPath, [packageFile(check.script), ...check.args], output)
+  const count = nothing()
+  const runs = checks.map(async (check) => {
+    const { code, output } = await capture(process.execPath, [packageFile(check.script), ...check.args], { cwd: root })
+    if (output) console.log(output)
     note(`${check.name}: ${code === 0 ? 'passed' : 'FAILED'}`)
     count[code === 0 ? 'passed' : 'failed']++
-  }
+  })
+  await Promise.all(runs)
   return count
 }
 
 /** @param {string} file vitest's JSON report @param {number} code its exit code @returns {Count} */
 const countTests = (file, code) => {
-  if (!fs.existsSync(file)) return { passed: 0, failed: 1, skipped: 0 }
+  if (!fs.existsSync(file)) return { ...nothing(), failed: 1 }
   const result = JSON.parse(fs.readFileSync(file, 'utf8'))
   /** @type {{ status: string, assertionResults: { status: string }[] }[]} */
   const files = result.testResults
@@ -64,7 +71,7 @@ const runTests = async (room) => {
   const reporters = ['--reporter=default', '--reporter=json', `--outputFile.json=${file}`]
   const { DATABASE_URL: _, ...env } = { ...process.env, ...room.env }
   const code = await run(process.execPath, [packageFile('vitest/vitest.mjs'), 'run', ...reporters, ...args], {
-    ...output,
+    ...shown,
     env
   })
   return countTests(file, code)
@@ -74,19 +81,24 @@ const main = async () => {
   checkNode()
   await ensurePackages()
   const wanted = projects()
-  const has = (/** @type {string[]} */ ...names) => !wanted || names.some((name) => wanted.includes(name))
+  const has = (/** @type {string[]} */ ...names) =>
+    !wanted || names.some((name) => wanted.some((one) => one.startsWith(name)))
   await ensurePrograms([
     'database',
     'audio',
     ...(has('media') ? /** @type {const} */ (['measures']) : []),
     ...(has('e2e', 'client') ? /** @type {const} */ (['browser']) : [])
   ])
-  const checked = wanted ? { passed: 0, failed: 0, skipped: 0 } : await runChecks()
+  const checking = wanted ? Promise.resolve(nothing()) : runChecks()
+  // A stop in the middle is told by what is waited for first.
+  checking.catch(() => {})
   const room = await openTestRoom({ database: has('api', 'realtime', 'media', 'e2e'), build: has('e2e') })
-  const tested = await runTests(room).finally(async () => {
-    await endAll()
-    await room.close()
-  })
+  const [checked, tested] = await checking
+    .then(async (found) => /** @type {const} */ ([found, await runTests(room)]))
+    .finally(async () => {
+      await endAll()
+      await room.close()
+    })
   const [passed, failed] = [checked.passed + tested.passed, checked.failed + tested.failed]
   console.log(`${passed} passed, ${failed} failed${tested.skipped ? `, ${tested.skipped} skipped` : ''}`)
   return failed > 0 ? 1 : 0
