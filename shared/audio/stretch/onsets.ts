@@ -41,6 +41,8 @@ const endApartSec = 0.06
 /** Two onsets are at least this far apart. */
 const apartSec = 0.03
 const chunkFrames = 16
+const keptChunks = 3200
+const kinds = ['rise', 'fall'] as const
 /** Energy below the loudest moment around by this much is taken for silence. */
 const floorRatio = 1e-5
 
@@ -85,14 +87,26 @@ export const createOnsetFinder = (source: SampleSource): OnsetFinder => {
       for (let b = 0; b < bandCount; b++) total += made[j * (bandCount + 1) + b]!
       made[j * (bandCount + 1) + bandCount] = total
     }
-    // A few minutes are enough: what is sought again is reckoned again.
-    if (energies.size > 3200) {
-      energies.clear()
-      rises.clear()
-      refined.clear()
-    }
     energies.set(index, made)
     return made
+  }
+
+  /** A few minutes are enough: what is sought again is reckoned again. */
+  const forgetSome = () => {
+    if (energies.size < keptChunks) return
+    energies.clear()
+    rises.clear()
+    refined.clear()
+  }
+
+  const before = new Float64Array(bandCount)
+  const after = new Float64Array(bandCount)
+  /** Adds the band energies of a frame, whose chunk has been reckoned. */
+  const addRow = (sums: Float64Array, j: number, weight: number) => {
+    const index = Math.floor(j / chunkFrames)
+    const rows = energies.get(index)!
+    const at = (j - index * chunkFrames) * (bandCount + 1)
+    for (let b = 0; b < bandCount; b++) sums[b] = sums[b]! + rows[at + b]! * weight
   }
 
   const changeAt = (j: number): { rise: number; fall: number } | null => {
@@ -100,25 +114,22 @@ export const createOnsetFinder = (source: SampleSource): OnsetFinder => {
     if (known !== undefined) return known
     let loudest = 0
     for (let i = j - around; i <= j + around; i++) {
-      const at = chunk(Math.floor(i / chunkFrames))
-      if (!at) return null
-      loudest = Math.max(loudest, at[(((i % chunkFrames) + chunkFrames) % chunkFrames) * (bandCount + 1) + bandCount]!)
+      const index = Math.floor(i / chunkFrames)
+      const rows = chunk(index)
+      if (!rows) return null
+      loudest = Math.max(loudest, rows[(i - index * chunkFrames) * (bandCount + 1) + bandCount]!)
+    }
+    before.fill(0)
+    after.fill(0)
+    for (let i = 0; i < span; i++) {
+      addRow(before, j - 1 - i, mean[i]!)
+      addRow(after, j + 1 + i, mean[i]!)
     }
     let up = 0
     let down = 0
     for (let b = 0; b < bandCount; b++) {
-      let before = 0
-      let after = 0
-      for (let i = 0; i < span; i++) {
-        const early = j - 1 - i
-        const late = j + 1 + i
-        const first = chunk(Math.floor(early / chunkFrames))!
-        const second = chunk(Math.floor(late / chunkFrames))!
-        before += first[(((early % chunkFrames) + chunkFrames) % chunkFrames) * (bandCount + 1) + b]! * mean[i]!
-        after += second[(((late % chunkFrames) + chunkFrames) % chunkFrames) * (bandCount + 1) + b]! * mean[i]!
-      }
       const floor = loudest * floorRatio + 1e-9
-      const rise = Math.log2((after / meanSum + floor) / (before / meanSum + floor))
+      const rise = Math.log2((after[b]! / meanSum + floor) / (before[b]! / meanSum + floor))
       if (rise > 0.5) up += weights[b]! * (Math.min(riseCap, rise) + rise * 1e-3)
       if (rise < -0.5) down += weights[b]! * (Math.min(riseCap, -rise) - rise * 1e-3)
     }
@@ -218,6 +229,7 @@ export const createOnsetFinder = (source: SampleSource): OnsetFinder => {
       return true
     },
     between: (from, to) => {
+      forgetSome()
       const found: Onset[] = []
       // The cut may lie beside the coarse peak by as much as the fine envelope looks.
       const margin = Math.ceil((leadGrains * grain) / hop)
@@ -226,18 +238,18 @@ export const createOnsetFinder = (source: SampleSource): OnsetFinder => {
       for (let j = firstFrame; j <= lastFrame; j++) {
         const here = changeAt(j)
         if (here === null) return null
-        for (const isEnd of [false, true]) {
-          const of = (change: { rise: number; fall: number }) => (isEnd ? change.fall : change.rise)
-          if (of(here) < (isEnd ? endThreshold : threshold)) continue
+        for (const kind of kinds) {
+          const isEnd = kind === 'fall'
+          if (here[kind] < (isEnd ? endThreshold : threshold)) continue
           let isPeak = true
           for (let i = 1; i <= apart && isPeak; i++) {
-            const before = changeAt(j - i)
-            const after = changeAt(j + i)
-            if (before === null || after === null) return null
-            isPeak = of(here) > of(before) && of(here) >= of(after)
+            const earlier = changeAt(j - i)
+            const later = changeAt(j + i)
+            if (earlier === null || later === null) return null
+            isPeak = here[kind] > earlier[kind] && here[kind] >= later[kind]
           }
           if (!isPeak) continue
-          const onset = refine(j, of(here), isEnd)
+          const onset = refine(j, here[kind], isEnd)
           if (!onset) return null
           found.push(...onset)
         }

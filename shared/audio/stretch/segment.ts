@@ -11,7 +11,9 @@ export interface Bench {
   size: number
   hop: number
   fft: RealFft
+  /** For looking for the likest place: on every `thin`th frame, over two windows. */
   search: RealFft
+  thin: number
   window: Float64Array
   synthesis: Float64Array
 }
@@ -20,7 +22,8 @@ export const createBench = (size: number): Bench => {
   const window = new Float64Array(size).map((_, i) => 0.5 - 0.5 * Math.cos((2 * Math.PI * i) / size))
   // Four Hann-squared windows over each other make 1.5.
   const synthesis = window.map((one) => one / 1.5)
-  return { size, hop: size >> 2, fft: realFft(size), search: realFft(size * 2), window, synthesis }
+  const thin = size >= 2048 ? 4 : 1
+  return { size, hop: size >> 2, fft: realFft(size), search: realFft((size / thin) * 2), thin, window, synthesis }
 }
 
 export interface SegmentPlan {
@@ -48,7 +51,13 @@ export interface Segment {
   /** Makes everything before `upTo` whole; false when the source has not got it yet. */
   produce(upTo: number): boolean
   /** Adds frames [from, to) times the gain curve into `out` at `offset`. */
-  mix(out: readonly Float32Array[], offset: number, from: number, to: number, gain: (inner: number) => number): void
+  mix(
+    out: readonly Float32Array[],
+    offset: number,
+    from: number,
+    to: number,
+    gain: ((inner: number) => number) | null
+  ): void
   /** The frames that end before `to`, which must be whole. */
   tail(to: number, length: number): Float64Array[]
 }
@@ -126,14 +135,23 @@ const angleBetween = (
   return length > 1e-20 ? [r / length, m / length, length] : [1, 0, 0]
 }
 
+/** Means of `by` values each; silence after the last. */
+const thinOut = (data: Float64Array, by: number, into: Float64Array) => {
+  for (let i = 0; i < into.length; i++) {
+    let sum = 0
+    for (let j = 0; j < by; j++) sum += data[i * by + j] ?? 0
+    into[i] = sum
+  }
+}
+
 export const createSegment = (plan: SegmentPlan): Segment => {
   const { bench, source, innerAt, sourceAt } = plan
-  const { size, hop, fft, search, window, synthesis } = bench
+  const { size, hop, fft, search, thin, window, synthesis } = bench
   const half = size >> 1
   const bins = half + 1
   const channels = source.channels
 
-  const made = Array.from({ length: channels }, () => new Float64Array(size * 4))
+  const made = Array.from({ length: channels }, () => new Float64Array(size * 8))
   /** Start of the next frame's window. */
   let next = plan.from - (size - hop)
   /** Inner frame of made[0]: a window earlier, so that a piece that has just begun has a tail too. */
@@ -158,8 +176,13 @@ export const createSegment = (plan: SegmentPlan): Segment => {
   const [pr, pi] = [spread(bins), spread(bins)]
   const power = new Float64Array(bins)
   const template = new Float64Array(size * 2)
-  const [tr, ti] = [new Float64Array(size + 1), new Float64Array(size + 1)]
-  const [sr, si] = [new Float64Array(size + 1), new Float64Array(size + 1)]
+  const [thinTemplate, thinWide, likeness] = [0, 1, 2].map(() => new Float64Array(search.size)) as [
+    Float64Array,
+    Float64Array,
+    Float64Array
+  ]
+  const [tr, ti] = [new Float64Array(search.size / 2 + 1), new Float64Array(search.size / 2 + 1)]
+  const [sr, si] = [new Float64Array(search.size / 2 + 1), new Float64Array(search.size / 2 + 1)]
 
   const hushFade = Math.round(source.sampleRate * 0.002)
   /** Silence from `from` on, after a short fade. */
@@ -221,44 +244,59 @@ export const createSegment = (plan: SegmentPlan): Segment => {
     const count = high - low + 1
     if (count <= 1) return low
     const length = size + count - 1
-    if (!source.read(low - hop - half, wide)) return null
-    if (edge < low - hop - half + length) hush(wide, edge - (low - hop - half))
+    const views = wide.map((data) => data.subarray(0, length))
+    if (!source.read(low - hop - half, views)) return null
+    if (edge < low - hop - half + length) hush(views, edge - (low - hop - half))
     wideWork.fill(0)
-    for (let c = 0; c < channels; c++) {
-      const data = wide[c]!
-      for (let i = 0; i < length; i++) wideWork[i] = wideWork[i]! + data[i]!
-    }
-    // Energy of each candidate, by a running sum.
-    let energy = 1e-12
-    for (let i = 0; i < size; i++) energy += wideWork[i]! * wideWork[i]!
-    search.forward(template, tr, ti)
-    search.forward(wideWork, sr, si)
+    for (const data of views) for (let i = 0; i < length; i++) wideWork[i] = wideWork[i]! + data[i]!
+    thinOut(wideWork, thin, thinWide)
+    thinOut(template, thin, thinTemplate)
+    search.forward(thinTemplate, tr, ti)
+    search.forward(thinWide, sr, si)
     // Strong low partials alone must not decide: each bin weighs by the square root of its size (Knapp & Carter 1976,
     // "The generalized correlation method", between plain correlation and phase transform).
-    for (let k = 0; k <= size; k++) {
-      const weight = (tr[k]! ** 2 + ti[k]! ** 2 + 1e-12) ** -0.25
+    for (let k = 0; k < tr.length; k++) {
+      const weight = 1 / Math.sqrt(Math.sqrt(tr[k]! * tr[k]! + ti[k]! * ti[k]! + 1e-12))
       const r = (sr[k]! * tr[k]! + si[k]! * ti[k]!) * weight
       si[k] = (si[k]! * tr[k]! - sr[k]! * ti[k]!) * weight
       sr[k] = r
     }
-    const likeness = new Float64Array(size * 2)
     search.inverse(sr, si, likeness)
-    let top = 1e-12
-    for (let d = 0; d < count; d++) top = Math.max(top, Math.abs(likeness[d]!))
+    // Energy of each candidate, by a running sum.
+    const [steps, span] = [Math.ceil(count / thin), size / thin]
+    let energy = 1e-12
+    for (let i = 0; i < span; i++) energy += thinWide[i]! * thinWide[i]!
     const first = energy
-    let best = low
+    let top = 1e-12
+    for (let d = 0; d < steps; d++) top = Math.max(top, Math.abs(likeness[d]!))
+    let best = 0
     let bestScore = -Infinity
     const scale = (high - low) / 2 || 1
-    for (let d = 0; d < count; d++) {
-      const off = (low + d - wanted) / scale
+    for (let d = 0; d < steps; d++) {
+      const off = (low + d * thin - wanted) / scale
       const score = (likeness[d]! / top) * Math.sqrt(first / energy) - farPenalty * off * off
       if (score > bestScore) {
         bestScore = score
-        best = low + d
+        best = d * thin
       }
-      const out = wideWork[d]!
-      const into = wideWork[d + size]!
+      const out = thinWide[d]!
+      const into = thinWide[d + span]!
       energy = Math.max(1e-12, energy + into * into - out * out)
+    }
+    return low + (thin === 1 ? best : nearby(best, count))
+  }
+
+  /** The likest of the candidates between the thinned ones. */
+  const nearby = (coarse: number, count: number): number => {
+    let best = coarse
+    let most = -Infinity
+    for (let d = Math.max(0, coarse - thin + 1); d < Math.min(count, coarse + thin); d++) {
+      let sum = 0
+      for (let i = 0; i < size; i++) sum += template[i]! * wideWork[d + i]!
+      if (sum > most) {
+        most = sum
+        best = d
+      }
     }
     return best
   }
@@ -450,7 +488,8 @@ export const createSegment = (plan: SegmentPlan): Segment => {
         const data = made[c]!
         const target = out[c]!
         for (let i = from; i < to; i++) {
-          target[offset + i - from] = target[offset + i - from]! + data[i - base]! * gain(i)
+          const value = data[i - base]!
+          target[offset + i - from] = target[offset + i - from]! + (gain ? value * gain(i) : value)
         }
       }
     }

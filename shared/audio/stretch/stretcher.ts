@@ -191,7 +191,7 @@ export const createStretcher = (source: SampleSource): Stretcher => {
     offset: number,
     from: number,
     to: number,
-    gain: (inner: number) => number
+    gain: ((inner: number) => number) | null
   ): boolean => {
     if (to <= from) return true
     if (one.segment) {
@@ -206,13 +206,12 @@ export const createStretcher = (source: SampleSource): Stretcher => {
       const target = out[c]!
       const data = views[c]!
       for (let i = from; i < to; i++) {
-        const g = gain(i)
-        target[offset + i - from] = target[offset + i - from]! + (g === 1 ? data[i - from]! : data[i - from]! * g)
+        const value = data[i - from]!
+        target[offset + i - from] = target[offset + i - from]! + (gain ? value * gain(i) : value)
       }
     }
     return true
   }
-  const whole = () => 1
 
   /** Mixes the next block of inner frames into the stock; false when the source has not got it yet. */
   const mixBlock = (): boolean => {
@@ -259,7 +258,7 @@ export const createStretcher = (source: SampleSource): Stretcher => {
         for (let c = 0; c < channels; c++) {
           for (let i = 0; i < to - from; i++) stock[c]![offset + i] = stock[c]![offset + i]! + scratch[c]![i]!
         }
-      } else if (!mixPiece(piece, stock, offset, from, to, whole)) return false
+      } else if (!mixPiece(piece, stock, offset, from, to, null)) return false
     }
     innerFrame = to
     if (coming && innerFrame >= coming.cut.inner) {
