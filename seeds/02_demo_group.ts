@@ -60,7 +60,7 @@ const seedTake = async (trx: Knex, storage: MediaStorage, slug: string, createdA
   await storage.keepOriginal(id, copy)
   const result = await ingestRecording(paths)
   if (!result.ok) throw new Error(`${take.file}: ${result.error.sentence}`)
-  const { durationSec, sampleRate, channels, loudness, rendition, manifest } = result.value
+  const { durationSec, sampleRate, channels, loudness, tuningCents, rendition, manifest } = result.value
   await trx('takes').insert({
     id,
     group_id: demoGroup.id,
@@ -77,6 +77,7 @@ const seedTake = async (trx: Knex, storage: MediaStorage, slug: string, createdA
     loudness_lufs: loudness.integratedLufs,
     true_peak_db: loudness.truePeakDb,
     gain_db: loudness.gainDb,
+    tuning_cents: tuningCents,
     original_bytes: take.bytes,
     original_mime: take.mime,
     rendition_mime: rendition.mime,

@@ -112,6 +112,7 @@ export interface TakeRow {
   loudness_lufs: number | null
   true_peak_db: number | null
   gain_db: number | null
+  tuning_cents: number | null
   original_bytes: number
   original_mime: string | null
   rendition_mime: string | null

@@ -82,7 +82,7 @@ export const createIngestJob = ({ db, databaseUrl, takes, events, storage, log, 
           await storage.removeTake(takeId)
           return
         }
-        const { durationSec, sampleRate, channels, loudness, rendition, manifest } = result.value
+        const { durationSec, sampleRate, channels, loudness, tuningCents, rendition, manifest } = result.value
         await finish(takeId, (trx) =>
           takes.setReady(
             takeId,
@@ -93,6 +93,7 @@ export const createIngestJob = ({ db, databaseUrl, takes, events, storage, log, 
               loudnessLufs: loudness.integratedLufs,
               truePeakDb: loudness.truePeakDb,
               gainDb: loudness.gainDb,
+              tuningCents,
               renditionMime: rendition.mime,
               manifest
             },

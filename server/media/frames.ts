@@ -41,6 +41,14 @@ export const createFrameReader = (channels: number) => {
   }
 }
 
+/** The middle of one or two interleaved channels. */
+export const toMono = (samples: Float32Array, channels: 1 | 2): Float32Array => {
+  if (channels === 1) return samples
+  const mono = new Float32Array(samples.length / 2)
+  for (let i = 0; i < mono.length; i++) mono[i] = (samples[2 * i]! + samples[2 * i + 1]!) / 2
+  return mono
+}
+
 /** Channels side by side as one array, frame after frame. */
 export const interleave = (channels: readonly Float32Array[], frames: number): Float32Array => {
   const mixed = new Float32Array(frames * channels.length)

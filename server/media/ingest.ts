@@ -1,13 +1,14 @@
-// Turns a recording into what the desk plays and draws: rendition, pieces, loudness, peaks. The file is decoded once.
+// Turns a recording into what the desk plays and draws: rendition, pieces, loudness, tuning, peaks. The file is decoded once.
 import { mkdir, readFile, rm, stat, writeFile } from 'node:fs/promises'
 import { basename, dirname, join } from 'node:path'
 import type { PieceManifest } from '@shared/audio/piece-manifest.ts'
 import type { PeakLevel } from '@shared/audio/peaks.ts'
+import { createTuningFinder, type TuningFinder } from '@shared/audio/tuning.ts'
 import { err, ok, type Result } from '@shared/result.ts'
 import { decodeCommand, piecesCommand, renditionCommand, renditionFile, renditionMime, type Sound } from './commands.ts'
 import { mediaFault, storageError, type MediaFault } from './faults.ts'
 import { sourceName, startFfmpeg, type Exit, type MediaProcess, type ProcessLimits } from './ffmpeg.ts'
-import { createFrameReader, feed } from './frames.ts'
+import { createFrameReader, feed, toMono } from './frames.ts'
 import { defaultMediaLimits, silenceThreshold, type MediaLimits } from './limits.ts'
 import { readLoudness, type Loudness } from './loudness.ts'
 import { createPeaksWriter } from './peaks-writer.ts'
@@ -33,6 +34,8 @@ export type IngestResult = {
   sampleRate: number
   channels: 1 | 2
   loudness: Loudness
+  /** Above or below A 440, to a tenth; null when it cannot be told. */
+  tuningCents: number | null
   rendition: { file: string; mime: string; bytes: number }
   peaks: { file: string; bytes: number; levels: PeakLevel[] }
   manifest: PieceManifest
@@ -47,7 +50,8 @@ type Job = IngestOptions & { work: string; sound: Sound; probe: Probe; bounds: M
 /** The finished result in `outDir`, or none. */
 export const readIngestResult = async (outDir: string): Promise<IngestResult | undefined> => {
   const text = await readFile(join(outDir, resultFile), 'utf8').catch(() => undefined)
-  return text === undefined ? undefined : (JSON.parse(text) as IngestResult)
+  // What was finished before tunings were listened for has none.
+  return text === undefined ? undefined : { tuningCents: null, ...(JSON.parse(text) as IngestResult) }
 }
 
 const processLimits = ({ probe, bounds }: Job, outputBytes: number): ProcessLimits => {
@@ -56,16 +60,20 @@ const processLimits = ({ probe, bounds }: Job, outputBytes: number): ProcessLimi
 }
 
 type Peaks = Awaited<ReturnType<typeof createPeaksWriter>>
+/** Whoever only listens while the recording passes. */
+type Listeners = { peaks: Peaks; tuning: TuningFinder }
 
-/** Hands what the decoder gives to the peaks and to both encoders. Stops early when the file is not worth going on. */
-const distribute = async (job: Job, decoder: MediaProcess, encoders: MediaProcess[], peaks: Peaks) => {
+/** Hands what the decoder gives to the peaks, the tuning and both encoders. Stops early when the file is not worth going on. */
+const distribute = async (job: Job, decoder: MediaProcess, encoders: MediaProcess[], listeners: Listeners) => {
   const { sound, probe, bounds, onProgress } = job
+  const { peaks, tuning } = listeners
   const toFrames = createFrameReader(sound.channels)
   let told = 0
   for await (const chunk of decoder.stdout as AsyncIterable<Buffer>) {
     const samples = toFrames(chunk)
     const bytes = Buffer.from(samples.buffer, samples.byteOffset, samples.byteLength)
     await peaks.push(samples)
+    tuning.push(toMono(samples, sound.channels))
     await Promise.all(encoders.map(({ stdin }) => stdin && feed(stdin, bytes)))
     const sec = peaks.frames() / sound.sampleRate
     if (sec > bounds.maxDurationSec) return mediaFault('too-long')
@@ -94,6 +102,7 @@ const renditionBytes = (bounds: MediaLimits): number => bounds.maxDurationSec * 
 
 const encode = async (job: Job, peaks: Peaks): Promise<Result<IngestResult, MediaFault>> => {
   const { work, sound, bounds, signal } = job
+  const listeners = { peaks, tuning: createTuningFinder(sound.sampleRate) }
   const options = (outputBytes: number) => ({ cwd: work, limits: processLimits(job, outputBytes), signal })
   const decoder = startFfmpeg(decodeCommand(sound, bounds.maxDurationSec + 1), options(1 << 20))
   const rendition = startFfmpeg(renditionCommand(sound), { ...options(renditionBytes(bounds)), pipeIn: true })
@@ -103,7 +112,7 @@ const encode = async (job: Job, peaks: Peaks): Promise<Result<IngestResult, Medi
     const cutting = cutPieces(opus.stdout, join(work, piecesFolder), sound.channels)
     // Its fault is looked at below; until then it must not count as unhandled.
     cutting.catch(() => opus.stop())
-    const early = await distribute(job, decoder, [rendition, opus], peaks)
+    const early = await distribute(job, decoder, [rendition, opus], listeners)
     if (early !== undefined) return err(early)
     const decoded = await decoder.exit
     throwIfOurs(decoded, signal)
@@ -117,26 +126,34 @@ const encode = async (job: Job, peaks: Peaks): Promise<Result<IngestResult, Medi
     requireDone('rendition', made)
     const manifest = await cutting
     requireDone('piece', cut)
-    return ok(await assemble(job, peaks, manifest, cut.stderr))
+    return ok(await assemble(job, listeners, manifest, cut.stderr))
   } finally {
     for (const process of processes) process.stop()
     await Promise.allSettled(processes.map(({ exit }) => exit))
   }
 }
 
-const assemble = async (job: Job, peaks: Peaks, manifest: PieceManifest, log: string): Promise<IngestResult> => {
+const assemble = async (
+  job: Job,
+  listeners: Listeners,
+  manifest: PieceManifest,
+  log: string
+): Promise<IngestResult> => {
   const { work, sound } = job
+  const { peaks, tuning } = listeners
   const durationSec = peaks.frames() / sound.sampleRate
   if (Math.abs(manifest.totalFrames - durationSec * manifest.sampleRate) > 2) throw new Error('Pieces and sound differ')
   const loudness = readLoudness(log)
   if (loudness === undefined) throw new Error('No loudness was measured')
   const header = await peaks.finish()
+  const tuned = tuning.result()
   const bytesOf = async (file: string) => (await stat(join(work, file))).size
   return {
     durationSec,
     sampleRate: sound.sampleRate,
     channels: sound.channels,
     loudness,
+    tuningCents: tuned && Math.round(tuned.cents * 10) / 10,
     rendition: { file: renditionFile, mime: renditionMime, bytes: await bytesOf(renditionFile) },
     peaks: { file: peaksFile, bytes: await bytesOf(peaksFile), levels: header.levels },
     manifest

@@ -24,6 +24,7 @@ export interface IngestedTake {
   loudnessLufs: number | null
   truePeakDb: number | null
   gainDb: number
+  tuningCents: number | null
   renditionMime: string
   manifest: object
 }
@@ -55,6 +56,7 @@ export const createTakesRepo = (db: Db) => {
         'takes.channels',
         'takes.loudness_lufs',
         'takes.gain_db',
+        'takes.tuning_cents',
         'takes.created_at',
         'users.name as uploader_name',
         trx.raw('(select count(*) from comments c where c.take_id = takes.id) as comment_count'),
@@ -81,6 +83,7 @@ export const createTakesRepo = (db: Db) => {
     channels: row.channels,
     loudnessLufs: row.loudness_lufs,
     gainDb: row.gain_db,
+    tuningCents: row.tuning_cents,
     commentCount: row.comment_count,
     openCount: row.open_count
   })
@@ -247,6 +250,7 @@ export const createTakesRepo = (db: Db) => {
           loudness_lufs: result.loudnessLufs,
           true_peak_db: result.truePeakDb,
           gain_db: result.gainDb,
+          tuning_cents: result.tuningCents,
           rendition_mime: result.renditionMime,
           manifest: JSON.stringify(result.manifest) as unknown as object,
           updated_at: trx.fn.now()

@@ -29,6 +29,8 @@ export const Take = z.object({
   channels: z.number().nullable(),
   loudnessLufs: z.number().nullable(),
   gainDb: z.number().nullable(),
+  /** Above (+) or below A 440, -50 to 50; null where the recording does not tell. */
+  tuningCents: z.number().nullable(),
   commentCount: z.number().int(),
   openCount: z.number().int(),
   abilities: z.array(z.string())

@@ -43,10 +43,18 @@ describe('an upload', () => {
     const id = newId()
     const answers = await Promise.all([1, 2, 3].map(() => upload(groupId, wav, 'a.wav', { id })))
     expect(answers.map(({ status }) => status)).toEqual([201, 201, 201])
-    expect(answers[0]?.body).toMatchObject({ id, state: 'waiting', progress: 0, uploader: { name: 'Inés Baltar' } })
+    expect(answers[0]?.body).toMatchObject({
+      id,
+      state: 'waiting',
+      progress: 0,
+      tuningCents: null,
+      uploader: { name: 'Inés Baltar' }
+    })
     expect(readFileSync(join(app.storageDir, 'takes', id, 'original')).equals(wav)).toBe(true)
     expect(await app.db('takes').where({ id })).toHaveLength(1)
     expect(await app.db('events').where({ object_id: id })).toHaveLength(1)
+    await app.db('takes').where({ id }).update({ tuning_cents: -18.3 })
+    expect(await must(ines, takeRoutes.get, { params: { takeId: id } })).toMatchObject({ tuningCents: -18.3 })
     await until(() => incoming().length === 0, 'nothing to be left')
     expect((await upload(groupId, wav, 'a.wav', { id }, await app.as('tomas'))).status).toBe(409)
     expect(readFileSync(join(app.storageDir, 'takes', id, 'original')).equals(wav)).toBe(true)

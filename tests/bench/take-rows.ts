@@ -133,6 +133,7 @@ export const addLongTake = async (
       channels: result.channels,
       loudness_lufs: result.loudness.integratedLufs,
       gain_db: result.loudness.gainDb,
+      tuning_cents: result.tuningCents,
       rendition_mime: result.rendition.mime,
       manifest: JSON.stringify(result.manifest) as unknown as object
     })

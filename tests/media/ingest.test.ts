@@ -147,6 +147,19 @@ describe('peaks', () => {
   })
 })
 
+describe('tuning', () => {
+  it('is told of chords 18 cents low on either side of the picture, and of hiss it is not', async () => {
+    const scratch = scratchFolder()
+    const tones = [45, 52, 55, 60, 65].map((midi) => `sin(2*PI*${440 * 2 ** ((midi - 69) / 12 - 18 / 1200)}*t)`)
+    const chord = ['-f', 'lavfi', '-i', `aevalsrc='0.1*(${tones.join('+')})|0':s=44100:d=4`]
+    const { tuningCents } = await ingest(makeRecording(scratch, 'chord.wav', chord), join(scratch, '1', 'media'))
+    expect(Math.abs((tuningCents ?? Infinity) + 18)).toBeLessThanOrEqual(1)
+    const hiss = ['-f', 'lavfi', '-i', 'anoisesrc=d=4:a=0.2:seed=5']
+    const told = await ingest(makeRecording(scratch, 'hiss.wav', hiss), join(scratch, '2', 'media'))
+    expect(told.tuningCents).toBeNull()
+  })
+})
+
 describe('loudness', () => {
   // EBU Tech 3341, table 1, test case 1: stereo sine of 1000 Hz at -23.0 dBFS on both channels, 20 s: I = -23.0 +-0.1 LUFS.
   // Test case 2: the same at -33.0 dBFS. Levels of sines are those of their peaks.

@@ -76,6 +76,7 @@ export const buildTake = async (app: Pick<TestApp, 'db' | 'storageDir'>, input: 
           sample_rate: media.sampleRate,
           channels: media.channels,
           gain_db: media.loudness.gainDb,
+          tuning_cents: media.tuningCents,
           rendition_mime: media.rendition.mime,
           manifest: JSON.stringify(media.manifest) as unknown as object
         }

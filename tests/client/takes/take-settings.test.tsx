@@ -27,6 +27,7 @@ const take: Take = {
   channels: 1,
   loudnessLufs: -18,
   gainDb: 0,
+  tuningCents: null,
   commentCount: 0,
   openCount: 0,
   overTakeId: null,
