@@ -15,6 +15,12 @@ export const centWords = (cents: number): string => {
   return `${count} ${count === 1 ? 'cent' : 'cents'} ${cents > 0 ? 'sharp' : 'flat'}`
 }
 
+/** "The take is 18 cents low". */
+export const tuningWords = (cents: number): string => {
+  const count = Math.abs(cents)
+  return `The take is ${count} ${count === 1 ? 'cent' : 'cents'} ${cents > 0 ? 'high' : 'low'}`
+}
+
 export const channelWords: Record<Channel, string> = {
   both: 'both sides',
   left: 'left side',

@@ -4,8 +4,8 @@ import { Checkbox } from '@client/ui/checkbox'
 import { Popover } from '@client/ui/popover'
 import { Select } from '@client/ui/select'
 import { Slider } from '@client/ui/slider'
-import { aidsWords, besideSwitches, centWords, channelWords, semitoneWords } from './aids-words'
-import { Part, WordsButton } from './part'
+import { aidsWords, besideSwitches, centWords, channelWords, semitoneWords, tuningWords } from './aids-words'
+import { ActButton, Part, WordsButton } from './part'
 import { semitoneLimit, type AidsControls } from './use-aids'
 
 const channels: Channel[] = ['both', 'left', 'right', 'middle', 'sides']
@@ -70,6 +70,7 @@ export function ListeningSettings({ listening }: { listening: AidsControls }) {
         disabled={!can.aids}
         onChange={listening.setCents}
       />
+      <TuningOffer {...listening} />
       <Slider
         label="Low focus keeps what lies below"
         says={`${Math.round(topHz)} Hz`}
@@ -92,5 +93,19 @@ export function ListeningSettings({ listening }: { listening: AidsControls }) {
         As recorded
       </Button>
     </div>
+  )
+}
+
+/** Says how the take is tuned and mends it, so that it agrees with an instrument at A 440; and back. */
+function TuningOffer({ aids, can, takeCents, setCents }: AidsControls) {
+  if (takeCents === null) return null
+  const isTuned = aids.cents === -takeCents
+  return (
+    <p className="flex flex-wrap items-center gap-x-3 text-sm text-pencil">
+      {tuningWords(takeCents)}
+      <ActButton disabled={!can.aids} onClick={() => setCents(isTuned ? 0 : -takeCents)}>
+        {isTuned ? 'leave it as tuned' : 'tune it'}
+      </ActButton>
+    </p>
   )
 }

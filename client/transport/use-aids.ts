@@ -10,6 +10,8 @@ export interface AidsControls {
   can: Pick<PlayerCapabilities, 'pitch' | 'aids'>
   /** Where low focus ends, also while it is off; hertz. */
   topHz: number
+  /** How the take is tuned against A 440, whole cents; null when that is not known or too little to mend. */
+  takeCents: number | null
   setOctaveUp: (isOctaveUp: boolean) => void
   setLowFocus: (isOn: boolean) => void
   setTopHz: (hz: number) => void
@@ -20,6 +22,9 @@ export interface AidsControls {
   reset: () => void
 }
 
+/** A take this close to A 440 is in tune, cents. */
+const inTuneCents = 3
+
 /** An octave either way; the octave switch comes on top of it. */
 export const semitoneLimit = 12
 
@@ -28,14 +33,20 @@ export interface KeptTop {
   onTopHz: (hz: number) => void
 }
 
-export const useAids = (player: Player, { topHz, onTopHz }: KeptTop): AidsControls => {
+export const useAids = (
+  player: Player,
+  { topHz, onTopHz }: KeptTop,
+  tuningCents: number | null = null
+): AidsControls => {
   const { aids, semitones, capabilities } = usePlayer(player)
+  const takeCents = tuningCents !== null && Math.abs(tuningCents) > inTuneCents ? Math.round(tuningCents) : null
   const change = (part: Partial<Aids>): void => player.setAids({ ...player.aids, ...part })
   return {
     aids,
     semitones,
     can: capabilities,
     topHz: aids.lowFocus.isOn ? aids.lowFocus.topHz : topHz,
+    takeCents,
     setOctaveUp: (isOctaveUp) => change({ isOctaveUp }),
     setLowFocus: (isOn) => change({ lowFocus: { isOn, topHz } }),
     setTopHz: (hz) => {

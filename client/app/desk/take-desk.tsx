@@ -58,7 +58,7 @@ export function TakeDesk({ me, take, player, missing, onGone }: TakeDeskProps) {
   const material = useTakeMaterial(take, me)
   const { model, comments, letters, tune, bars } = material
   const [selection, setSelection] = useState<Span | null>(null)
-  const practice = useDeskPractice(player, model)
+  const practice = useDeskPractice(player, model, take.tuningCents)
   const hearing = useHearing({ me, take, player, selection, ways: practice.manner.ways })
   const { controls } = hearing
   const [panel, setPanel] = useState<DeskPanel | null>(null)

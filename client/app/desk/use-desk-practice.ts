@@ -22,7 +22,11 @@ export interface DeskPractice {
   tempoNow: () => number | null
 }
 
-export const useDeskPractice = (player: Player, { barMap, durationSec }: DeskModel): DeskPractice => {
+export const useDeskPractice = (
+  player: Player,
+  { barMap, durationSec }: DeskModel,
+  tuningCents: number | null
+): DeskPractice => {
   const { preferences } = usePreferences()
   const change = useChangePreferences()
   const tempoNow = () => barMap?.tempoAt(player.heardPosition) ?? null
@@ -31,10 +35,11 @@ export const useDeskPractice = (player: Player, { barMap, durationSec }: DeskMod
     return tempo === null ? null : tempo * player.rate
   }
   return {
-    listening: useAids(player, {
-      topHz: preferences.lowFocusTopHz,
-      onTopHz: (lowFocusTopHz) => change({ lowFocusTopHz })
-    }),
+    listening: useAids(
+      player,
+      { topHz: preferences.lowFocusTopHz, onTopHz: (lowFocusTopHz) => change({ lowFocusTopHz }) },
+      tuningCents
+    ),
     manner: useLoopManner(player, barMap),
     click: useClicks(player, barMap, durationSec),
     tapping: useTapTempo(heardTempo),

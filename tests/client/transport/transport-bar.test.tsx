@@ -21,9 +21,19 @@ afterEach(cleanup)
 
 const selection = { startSec: 4, endSec: 12 }
 const fourFour = { upper: 4, lower: 4, pulse: 1 }
-type Extra = Partial<Omit<TransportBarProps, 'player'>> & { hasClick?: boolean; meter?: typeof fourFour | null }
+type Extra = Partial<Omit<TransportBarProps, 'player'>> & {
+  hasClick?: boolean
+  meter?: typeof fourFour | null
+  tuningCents?: number | null
+}
 
-function Bar({ player, hasClick = true, meter = fourFour, ...extra }: Extra & { player: PractisingPlayer }) {
+function Bar({
+  player,
+  hasClick = true,
+  meter = fourFour,
+  tuningCents = null,
+  ...extra
+}: Extra & { player: PractisingPlayer }) {
   const [topHz, setTopHz] = useState(300)
   const [settings, setSettings] = useState<ClickSettings>(defaultPreferences.click)
   const [countIn, setCountIn] = useState(defaultPreferences.countIn)
@@ -50,7 +60,7 @@ function Bar({ player, hasClick = true, meter = fourFour, ...extra }: Extra & { 
       selection={selection}
       spanWords={() => 'bars 3 to 6'}
       tempoNow={() => 120}
-      listening={useAids(player, { topHz, onTopHz: setTopHz })}
+      listening={useAids(player, { topHz, onTopHz: setTopHz }, tuningCents)}
       manner={manner}
       tapping={useTapTempo(() => null)}
       {...(hasClick ? { click } : {})}
@@ -149,6 +159,23 @@ describe('listening', () => {
     expect(screen.getByRole('button', { name: 'to 300 Hz · 2 semitones down · left side' })).toBeTruthy()
     await user.click(box.getByRole('button', { name: 'As recorded', hidden: true }))
     expect([player.semitones, player.aids]).toEqual([0, plainAids])
+  })
+
+  it('offers to mend the tuning of the take, and to leave it', async () => {
+    const { user, player } = open(practisingPlayer(), { tuningCents: -18.3 })
+    await user.click(screen.getByRole('button', { name: 'as recorded' }))
+    expect(screen.getByText(/^The take is 18 cents low/)).toBeTruthy()
+    await user.click(screen.getByRole('button', { name: 'tune it', hidden: true }))
+    expect(player.aids.cents).toBe(18)
+    await user.click(screen.getByRole('button', { name: 'leave it as tuned', hidden: true }))
+    expect(player.aids.cents).toBe(0)
+  })
+
+  it.each([null, 0, 3, -3])('offers no tuning where the take is %s cents off', async (tuningCents) => {
+    const { user } = open(practisingPlayer(), { tuningCents })
+    await user.click(screen.getByRole('button', { name: 'as recorded' }))
+    expect(screen.getByRole('slider', { name: 'Fine tune', hidden: true })).toBeTruthy()
+    expect(screen.queryByText(/^The take is/)).toBeNull()
   })
 
   it('disables what the engine lacks and says so quietly', () => {
