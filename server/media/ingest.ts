@@ -41,6 +41,9 @@ export type IngestResult = {
   manifest: PieceManifest
 }
 
+/** What was finished before tunings were listened for has none. */
+type EarlierResult = Omit<IngestResult, 'tuningCents'> & Partial<Pick<IngestResult, 'tuningCents'>>
+
 export const resultFile = 'result.json'
 export const peaksFile = 'peaks.bin'
 export const piecesFolder = 'pieces'
@@ -50,8 +53,9 @@ type Job = IngestOptions & { work: string; sound: Sound; probe: Probe; bounds: M
 /** The finished result in `outDir`, or none. */
 export const readIngestResult = async (outDir: string): Promise<IngestResult | undefined> => {
   const text = await readFile(join(outDir, resultFile), 'utf8').catch(() => undefined)
-  // What was finished before tunings were listened for has none.
-  return text === undefined ? undefined : { tuningCents: null, ...(JSON.parse(text) as IngestResult) }
+  if (text === undefined) return undefined
+  const found = JSON.parse(text) as EarlierResult
+  return { tuningCents: null, ...found }
 }
 
 const processLimits = ({ probe, bounds }: Job, outputBytes: number): ProcessLimits => {
