@@ -52,7 +52,12 @@ export default defineConfig({
       // Reckoning on a busy machine may take its time; a test that hangs still ends.
       project('unit', { ...twoAtATime, testTimeout: 60_000 }),
       project('architecture', twoAtATime),
-      project('client', { ...twoAtATime, environment: 'jsdom', testTimeout: 30_000 }),
+      project('client', {
+        ...twoAtATime,
+        environment: 'jsdom',
+        setupFiles: ['tests/support/patience.ts'],
+        testTimeout: 30_000
+      }),
       project('setup', { ...real(1), testTimeout: 120_000, hookTimeout: 120_000 }),
       project('api', { ...real(1), testTimeout: 30_000, hookTimeout: 60_000 }),
       project('realtime', { ...real(1), testTimeout: 30_000, hookTimeout: 60_000 }),

@@ -19,6 +19,9 @@ const main = async () => {
   if (!Object.hasOwn(files, name)) throw new Trouble(`Commands: ${Object.keys(files).join(', ')}.`)
   await ensurePackages()
   if (name === 'stretch') await ensurePrograms(['audio'])
+  const benches = args.filter((arg) => !arg.startsWith('--'))
+  if (name === 'bench' && (benches.length === 0 || benches.some((one) => ['quality', 'render'].includes(one))))
+    await ensurePrograms(['rubberband', 'soundstretch'])
   const file = files[/** @type {keyof typeof files} */ (name)]
   const child = spawn(process.execPath, [...typescript(file), ...args], { cwd: root, stdio: 'inherit' })
   // The terminal's Ctrl-C reaches the command too; it decides when to end.

@@ -22,6 +22,8 @@ const needs = {
   database: { package: 'postgresql', isThere: () => postgresFolders().length > 0 },
   audio: { package: 'ffmpeg', isThere: () => isProgram('ffmpeg') && isProgram('ffprobe') },
   measures: { package: 'aubio-tools', isThere: () => isProgram('aubiopitch') && isProgram('aubioonset') },
+  rubberband: { package: 'rubberband-cli', isThere: () => isProgram('rubberband') },
+  soundstretch: { package: 'soundstretch', isThere: () => isProgram('soundstretch') },
   browser: { package: 'chromium', isThere: () => isProgram('chromium') }
 }
 
@@ -45,7 +47,7 @@ const withoutMainCluster = async (install) => {
 
 /**
  * Installs what is missing as root, else says the one command that does.
- * @param {('database' | 'audio' | 'measures' | 'browser')[]} names
+ * @param {('database' | 'audio' | 'measures' | 'rubberband' | 'soundstretch' | 'browser')[]} names
  */
 export const ensurePrograms = async (names) => {
   const missing = () => names.map((name) => needs[name]).filter((need) => need && !need.isThere())

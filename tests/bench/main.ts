@@ -7,6 +7,9 @@ import { barMapFigures } from './bar-map.ts'
 import { chordFigures } from './chords.ts'
 import { commentFigures } from './comments.ts'
 import { deskFigures } from './desk.ts'
+import { memoryFigures } from './engine/memory.ts'
+import { qualityFigures } from './engine/quality.ts'
+import { renderFigures } from './engine/render.ts'
 import { ingestFigures } from './ingest.ts'
 import { root } from './processes.ts'
 import { rangeFigures } from './range.ts'
@@ -20,6 +23,9 @@ const benches: Record<string, (stage: Stage, rounds: number) => Promise<Figure[]
   range: rangeFigures,
   assets: assetFigures,
   desk: deskFigures,
+  memory: () => memoryFigures(),
+  quality: () => qualityFigures(),
+  render: (_stage, rounds) => renderFigures(rounds),
   ingest: (_stage, rounds) => ingestFigures(rounds)
 }
 const needPage = ['assets', 'desk']

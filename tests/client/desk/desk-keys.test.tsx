@@ -28,7 +28,7 @@ const model = deskModel({
 })
 
 function Desk({ player, said }: { player: PractisingPlayer; said: (words: string) => void }) {
-  const practice = useDeskPractice(player, model)
+  const practice = useDeskPractice(player, model, null)
   const controls = soloControls(player, practice.manner.ways)
   useDeskKeys({
     player,
