@@ -133,7 +133,9 @@ export const createPlayer = (deps: CreatePlayerDeps = {}): Player => {
       loads += 1
       wantsPlaying = false
       if (!isWorklet && hasWorklets()) change(worklet(), true)
-      onMissing(hasWorklets() ? null : insecureWords)
+      onMissing(
+        hasWorklets() ? null : window.isSecureContext ? unfitWords('This browser cannot run the exact player.') : insecureWords
+      )
       await engine.load(next)
     },
     play: (at) => {
