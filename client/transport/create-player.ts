@@ -134,7 +134,11 @@ export const createPlayer = (deps: CreatePlayerDeps = {}): Player => {
       wantsPlaying = false
       if (!isWorklet && hasWorklets()) change(worklet(), true)
       onMissing(
-        hasWorklets() ? null : window.isSecureContext ? unfitWords('This browser cannot run the exact player.') : insecureWords
+        hasWorklets()
+          ? null
+          : window.isSecureContext
+            ? unfitWords('This browser cannot run the exact player.')
+            : insecureWords
       )
       await engine.load(next)
     },
